@@ -1,0 +1,16 @@
+import { Column, Entity, PrimaryColumn } from 'typeorm';
+
+@Entity('shelf')
+export class ShelfEntity {
+  @PrimaryColumn({ type: 'char', length: 36 })
+  id!: string;
+
+  @Column({ name: 'rack_id', type: 'char', length: 36 })
+  rackId!: string;
+
+  @Column({ type: 'int' })
+  position!: number;
+
+  @Column({ type: 'int' })
+  capacity!: number;
+}
