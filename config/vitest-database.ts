@@ -3,14 +3,8 @@ import { createServer } from 'node:net';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import type { TestProject } from 'vitest/node';
+import type { DatabaseOfTheRun } from '../gateway/database/test-database.js';
 import { DatabaseServer } from './set-up/database-server.mjs';
-
-declare module 'vitest' {
-  export interface ProvidedContext {
-    /** The test run's own MariaDB; specs create a database each (gateway/database/test-database.ts). */
-    database: { socket: string; port: number; administrator: string; pid: number; dataDir: string };
-  }
-}
 
 /** Starts a MariaDB of its own in a throw-away folder for the integration specs. */
 export default async function setup(project: TestProject) {
@@ -25,13 +19,8 @@ export default async function setup(project: TestProject) {
     server.remove();
   };
   process.once('exit', kill);
-  project.provide('database', {
-    socket: server.socket,
-    port: server.options.port,
-    administrator: process.env['USER'] ?? 'root',
-    pid: server.pid ?? 0,
-    dataDir: server.options.dataDir,
-  });
+  const database: DatabaseOfTheRun = { socket: server.socket, port: server.options.port };
+  project.provide('database', database);
   return async () => {
     await server.stop();
     server.remove();

@@ -6,6 +6,18 @@ import { inject } from 'vitest';
 import { createDataSource, type DatabaseAccess } from './data-source.js';
 import { migrateDatabase } from './migrate-database.js';
 
+/** Where the test run's own MariaDB listens (config/vitest-database.ts starts it). */
+export interface DatabaseOfTheRun {
+  readonly socket: string;
+  readonly port: number;
+}
+
+declare module 'vitest' {
+  export interface ProvidedContext {
+    database: DatabaseOfTheRun;
+  }
+}
+
 /** A freshly migrated database of its own on the test run's MariaDB, for one integration spec. */
 export interface TestDatabase {
   /** Connected with the run-time account, which may not change tables. */
