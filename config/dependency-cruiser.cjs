@@ -20,7 +20,12 @@ module.exports = {
       from: {},
       to: { circular: true },
     },
-    forbid('shared-is-pure', '^shared/', '^(gateway|simulator|web|e2e|config)/', 'shared knows none of its users.'),
+    forbid(
+      'shared-is-pure',
+      '^shared/',
+      '^(gateway|simulator|web|e2e|config)/',
+      'shared knows none of its users.',
+    ),
     {
       name: 'shared-has-no-node',
       severity: 'error',
@@ -30,12 +35,18 @@ module.exports = {
     },
     forbid('units-stand-alone', '^shared/units/', { path: '^shared/', pathNot: '^shared/units/' }),
     forbid('air-needs-units', '^shared/air/', { path: '^shared/', pathNot: '^shared/(air|units)/' }),
-    forbid('statistics-needs-units', '^shared/statistics/', { path: '^shared/', pathNot: '^shared/(statistics|units)/' }),
+    forbid('statistics-needs-units', '^shared/statistics/', {
+      path: '^shared/',
+      pathNot: '^shared/(statistics|units)/',
+    }),
     forbid('cure-needs-the-pure-parts', '^shared/cure/', {
       path: '^shared/',
       pathNot: '^shared/(cure|units|air|statistics)/',
     }),
-    forbid('contract-needs-units', '^shared/contract/', { path: '^shared/', pathNot: '^shared/(contract|units)/' }),
+    forbid('contract-needs-units', '^shared/contract/', {
+      path: '^shared/',
+      pathNot: '^shared/(contract|units)/',
+    }),
     forbid('ends-meet-in-shared-only', '^gateway/', '^(simulator|web|e2e)/'),
     forbid('simulator-stands-alone', '^simulator/', '^(gateway|web|e2e)/'),
     forbid('web-stands-alone', '^web/', '^(gateway|simulator|e2e)/'),
@@ -61,7 +72,11 @@ module.exports = {
     ),
     forbid('transports-do-not-meet', '^gateway/intake/', '^gateway/(live|http)/'),
     forbid('live-knows-no-broker', '^gateway/live/', '^gateway/intake/'),
-    forbid('only-main-assembles', { path: '^gateway/', pathNot: `${specs}|^gateway/(main|assemble[^/]*)\\.ts$` }, '^gateway/assemble'),
+    forbid(
+      'only-main-assembles',
+      { path: '^gateway/', pathNot: `${specs}|^gateway/(main|assemble[^/]*)\\.ts$` },
+      '^gateway/assemble',
+    ),
     forbid('features-share-ui-and-core', '^web/app/features/([^/]+)/', {
       path: '^web/app/features/',
       pathNot: '^web/app/features/$1/',

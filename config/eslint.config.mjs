@@ -6,10 +6,23 @@ import tseslint from 'typescript-eslint';
 const root = new URL('..', import.meta.url).pathname;
 
 export default defineConfig(
-  { ignores: ['dist/**', '.cache/**', 'node_modules/**', 'coverage/**', 'test-results/**', 'playwright-report/**'] },
+  {
+    ignores: [
+      'dist/**',
+      '.cache/**',
+      'node_modules/**',
+      'coverage/**',
+      'test-results/**',
+      'playwright-report/**',
+    ],
+  },
   {
     files: ['**/*.ts'],
-    extends: [eslint.configs.recommended, tseslint.configs.recommendedTypeChecked, tseslint.configs.stylistic],
+    extends: [
+      eslint.configs.recommended,
+      tseslint.configs.recommendedTypeChecked,
+      tseslint.configs.stylistic,
+    ],
     languageOptions: {
       parserOptions: {
         project: [
@@ -28,7 +41,10 @@ export default defineConfig(
       '@typescript-eslint/restrict-template-expressions': ['error', { allowNumber: true }],
       '@typescript-eslint/no-unnecessary-condition': 'off',
       // Handlers and listeners that return a promise to nobody are caught by no-floating-promises.
-      '@typescript-eslint/no-misused-promises': ['error', { checksVoidReturn: { arguments: false, attributes: false } }],
+      '@typescript-eslint/no-misused-promises': [
+        'error',
+        { checksVoidReturn: { arguments: false, attributes: false } },
+      ],
       '@typescript-eslint/require-await': 'off',
       '@typescript-eslint/unbound-method': 'off',
       'max-lines': ['error', { max: 400, skipBlankLines: true, skipComments: true }],
@@ -72,7 +88,10 @@ export default defineConfig(
       '@angular-eslint/directive-class-suffix': 'off',
       '@angular-eslint/prefer-on-push-component-change-detection': 'error',
       '@angular-eslint/component-selector': ['error', { type: 'element', prefix: 'sr', style: 'kebab-case' }],
-      '@angular-eslint/directive-selector': ['error', { type: 'attribute', prefix: 'sr', style: 'camelCase' }],
+      '@angular-eslint/directive-selector': [
+        'error',
+        { type: 'attribute', prefix: 'sr', style: 'camelCase' },
+      ],
     },
   },
   {

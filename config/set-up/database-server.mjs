@@ -95,7 +95,8 @@ export class DatabaseServer {
         '--max-connections=200',
         ...extraFlags,
       ],
-      { stdio: 'ignore' },
+      // A group of its own: Ctrl-C reaches only the starter, which stops the database last.
+      { stdio: 'ignore', detached: true },
     );
     this.#process = child;
     let ended = null;
