@@ -13,4 +13,8 @@ export class ShelfEntity {
 
   @Column({ type: 'int' })
   capacity!: number;
+
+  /** Set when the shelf no longer exists; its past stays remain. */
+  @Column({ name: 'taken_away_at', type: 'datetime', precision: 3, nullable: true })
+  takenAwayAt!: Date | null;
 }
