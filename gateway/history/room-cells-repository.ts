@@ -1,5 +1,5 @@
 import type { DataSource } from 'typeorm';
-import { CELL_MS, cellStart } from '#shared/cure/grid';
+import { CELL_MS, cellOf, cellStart } from '#shared/cure/grid';
 
 /** What decides how a sensor counts towards its room. */
 export interface RoomSensor {
@@ -77,13 +77,18 @@ export class RoomCellsRepository {
     return runs;
   }
 
-  /** First cell of a room in which a trusted sensor measured something; null for none. */
-  async firstCell(roomId: string): Promise<number | null> {
-    const [row] = await this.dataSource.query<{ first: Date | null }[]>(
-      `SELECT MIN((SELECT MIN(r.bucket) FROM rollup r WHERE r.sensor_no = s.no AND r.level = 5)) AS first
-       FROM sensor s WHERE s.room_id = ? AND s.trusted = 1`,
-      [roomId],
-    );
-    return row?.first ? Math.floor(row.first.getTime() / CELL_MS) : null;
+  /** Last cell before `cell` in which a trusted sensor of the room measured something; null for none. */
+  async lastCell(roomId: string, cell: number): Promise<number | null> {
+    const sensors = await this.sensors([roomId]);
+    let last: number | null = null;
+    for (const { no, retiredAt } of sensors) {
+      const before = Math.min(cellStart(cell), retiredAt ?? Infinity);
+      const [row] = await this.dataSource.query<{ last: Date | null }[]>(
+        'SELECT MAX(bucket) AS last FROM rollup WHERE sensor_no = ? AND level = 5 AND bucket < ?',
+        [no, new Date(before)],
+      );
+      if (row?.last) last = Math.max(last ?? -Infinity, cellOf(row.last.getTime()));
+    }
+    return last;
   }
 }
