@@ -32,13 +32,17 @@ export interface RouteDefinition<
   readonly reply: Reply;
 }
 
-/** Declares a route; gives the literal types of its schemas to both ends. */
+/** Declares a route; gives the literal types of its method, path and schemas to both ends. */
 export function defineRoute<
   Params extends z.ZodType,
   Query extends z.ZodType,
   Body extends z.ZodType,
   Reply extends z.ZodType,
->(route: RouteDefinition<Params, Query, Body, Reply>): RouteDefinition<Params, Query, Body, Reply> {
+  Method extends RouteDefinition['method'],
+  Path extends string,
+>(
+  route: RouteDefinition<Params, Query, Body, Reply> & { readonly method: Method; readonly path: Path },
+): RouteDefinition<Params, Query, Body, Reply> & { readonly method: Method; readonly path: Path } {
   return route;
 }
 
