@@ -76,7 +76,7 @@ function queryOf(query: Record<string, unknown>): HttpParams {
   let params = new HttpParams();
   for (const [name, value] of Object.entries(query)) {
     if (value === undefined || value === null) continue;
-    params = params.set(name, String(value as string | number | boolean));
+    params = params.set(name, String(value));
   }
   return params;
 }
