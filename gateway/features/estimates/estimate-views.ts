@@ -9,18 +9,14 @@ import {
 } from '#shared/cure/estimate';
 import type { GateEstimate } from '#shared/cure/gates';
 import type { Shift as ShiftOfLedger } from '#shared/cure/shifts';
-import type { BatchFacts, StayFacts } from './batch-facts-repository.js';
+import type { BatchFacts } from './batch-facts-repository.js';
 
 type Known = Extract<Estimated, { known: true }>;
 
-/** The stay a batch is in, or was in at an instant; null when it is not on a shelf. */
-export function stayAt(batch: BatchFacts, at: number): StayFacts | null {
-  return batch.stays.find((stay) => stay.from <= at && (stay.to === null || stay.to > at)) ?? null;
-}
-
 /** Card of a batch; `atRisk` is filled in by whoever knows the room's temperature right now. */
-export function cardOf(batch: BatchFacts, estimated: Estimated, at: number): Omit<BatchCard, 'atRisk'> {
-  const stay = batch.status === 'curing' ? stayAt(batch, at) : null;
+export function cardOf(batch: BatchFacts, estimated: Estimated): Omit<BatchCard, 'atRisk'> {
+  const last = batch.stays.at(-1);
+  const stay = batch.status === 'curing' && last?.to === null ? last : null;
   const estimate = estimated.known ? estimated.estimate : null;
   return {
     id: batch.id,

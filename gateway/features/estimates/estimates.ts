@@ -1,7 +1,7 @@
 import type { BatchCard, CurvePoint, EstimateView, Shift } from '#shared/contract/batches';
 import { cureCurve } from '#shared/cure/curve';
 import { BatchCycles } from '#shared/cure/cycles';
-import { type BatchToEstimate, type Estimated, estimateBatch } from '#shared/cure/estimate';
+import { type Estimated, estimateBatch } from '#shared/cure/estimate';
 import { CELL_MS, cellOf, cellStart } from '#shared/cure/grid';
 import type { RoomHistory } from '#shared/cure/room-history';
 import { shiftLedger } from '#shared/cure/shifts';
@@ -18,6 +18,7 @@ import {
   estimateView,
   shiftViews,
 } from './estimate-views.js';
+import { factsAt, questionAbout } from './facts-at.js';
 import { Floor } from './floor.js';
 
 export interface EstimatesParts {
@@ -31,6 +32,9 @@ export interface EstimatesParts {
 
 /** A batch with its estimate at an instant. */
 export interface EstimatedBatch {
+  /** Epoch ms. */
+  readonly instant: number;
+  /** Its stays and state at the instant. */
   readonly facts: BatchFacts;
   readonly card: BatchCard;
   readonly estimate: EstimateView | null;
@@ -120,13 +124,15 @@ export class Estimates {
     if (facts?.studioId !== studioId) return null;
     await this.#needHistoriesOf([facts]);
     const instant = this.#instantFor(facts, at);
-    const estimated = this.#estimate(facts, instant, new BatchCycles());
-    const atRisk = at === null && facts.status === 'curing' && this.#atRisk(facts);
-    const card = { ...cardOf(facts, estimated, instant), atRisk };
-    const names = new Map(facts.stays.map((stay) => [stay.roomId, stay.roomName]));
-    const view = estimated.known ? estimateView(facts, estimated) : null;
+    const then = factsAt(facts, instant);
+    const estimated = this.#estimate(then, instant, new BatchCycles());
+    const atRisk = at === null && then.status === 'curing' && this.#atRisk(then);
+    const card = { ...cardOf(then, estimated), atRisk };
+    const names = new Map(then.stays.map((stay) => [stay.roomId, stay.roomName]));
+    const view = estimated.known ? estimateView(then, estimated) : null;
     return {
-      facts,
+      instant,
+      facts: then,
       card: forViewer ? cardForViewer(card) : card,
       estimate: view && forViewer ? estimateForViewer(view) : view,
       shifts: estimated.known
@@ -141,7 +147,7 @@ export class Estimates {
     if (facts?.studioId !== studioId) return null;
     await this.#needHistoriesOf([facts]);
     const instant = this.#instantFor(facts, null);
-    const question = this.#question(facts, instant, new BatchCycles());
+    const question = questionAbout(facts, instant, new BatchCycles());
     const estimated = estimateBatch(question, this.#historyOf, instant);
     return estimated.known ? curveViews(cureCurve(question, estimated, this.#historyOf)) : [];
   }
@@ -151,7 +157,8 @@ export class Estimates {
     const [facts] = await this.parts.facts.some([batchId]);
     if (!facts) return null;
     await this.#needHistoriesOf([facts]);
-    const estimated = this.#estimate(facts, this.#instantFor(facts, at), new BatchCycles());
+    const instant = this.#instantFor(facts, at);
+    const estimated = this.#estimate(factsAt(facts, instant), instant, new BatchCycles());
     if (!estimated.known) return null;
     return { hardening: estimated.estimate.hardening, cureAgeDays: estimated.estimate.hardeningDays };
   }
@@ -176,10 +183,14 @@ export class Estimates {
     }
   }
 
-  /** Makes every estimate anew after waxes or verdicts changed. */
-  async allTouched(): Promise<void> {
-    await this.#inTurn(() => this.#reload());
-    this.#announce(this.#floor.all());
+  /** The same for every curing batch on a wax or a design; returns the studios they belong to. */
+  async madeOfTouched(made: { readonly waxId?: string; readonly designId?: string }): Promise<string[]> {
+    const batches = this.#floor
+      .all()
+      .filter(({ design }) => design.waxId === made.waxId || design.id === made.designId);
+    await this.#inTurn(() => this.#readAgain(batches.map(({ id }) => id)));
+    this.#announce(batches);
+    return [...new Set(batches.map(({ studioId }) => studioId))];
   }
 
   /** Takes a room's temperature right now (null: not known or stale) and announces the batches whose risk it changed. */
@@ -196,7 +207,7 @@ export class Estimates {
     const known = this.#cards.get(facts.id);
     if (known?.cell === end && facts.status === 'curing') return known.card;
     const instant = this.#instantFor(facts, null);
-    const card = cardOf(facts, this.#estimate(facts, instant, this.#cyclesOf(facts)), instant);
+    const card = cardOf(facts, this.#estimate(facts, instant, this.#cyclesOf(facts)));
     if (facts.status === 'curing') this.#cards.set(facts.id, { cell: end, card });
     return card;
   }
@@ -212,26 +223,7 @@ export class Estimates {
   }
 
   #estimate(facts: BatchFacts, instant: number, cycles: BatchCycles): Estimated {
-    return estimateBatch(this.#question(facts, instant, cycles), this.#historyOf, instant);
-  }
-
-  /** What was known of the batch's places and tests at an instant. */
-  #question(facts: BatchFacts, instant: number, cycles: BatchCycles): BatchToEstimate {
-    const { design } = facts;
-    const testsSoFar = design.tests.filter((test) => test.at <= instant);
-    const ownTest = testsSoFar.filter((test) => test.batchId === facts.id).at(-1);
-    return {
-      pouredAt: facts.pouredAt,
-      stays: facts.stays
-        .filter((stay) => stay.from <= instant)
-        .map(({ roomId, from, to }) => ({ roomId, from, to: to !== null && to > instant ? null : to })),
-      kinetics: design.kinetics,
-      loadPercentOfWax: design.loadPercentOfWax,
-      // A failed test is repeated anyway; only a passed one can grow old.
-      lastTest: ownTest?.passed ? { at: ownTest.at, hardening: ownTest.hardeningAtTest } : null,
-      designPassed: testsSoFar.at(-1)?.passed ?? false,
-      cycles,
-    };
+    return estimateBatch(questionAbout(facts, instant, cycles), this.#historyOf, instant);
   }
 
   /** The instant to estimate for: within the batch's life and not past the complete cells. */
