@@ -208,6 +208,8 @@ export const batchRoutes = {
         pouredAt: f.instant,
         pourCelsius: z.number().min(20).max(140).nullable().default(null),
         shelfId: f.id.nullable().default(null),
+        /** Places the batch even where the shelf has no room for all of it. */
+        overfill: z.boolean().default(false),
         notes: f.note.default(''),
       })
       .strict(),
