@@ -43,6 +43,9 @@ export type Refusal =
 
 export type Outcome = { readonly kind: 'done' } | Refusal;
 
+/** After waiting for a shelf's lock, what others have put there meanwhile must be seen. */
+const EACH_READ_ANEW = 'READ COMMITTED';
+
 /** Batches and their stays. Every read and write names the studio. */
 export class BatchesRepository {
   constructor(private readonly dataSource: DataSource) {}
@@ -55,7 +58,7 @@ export class BatchesRepository {
     audit: (code: string) => AuditLine,
   ): Promise<Outcome> {
     try {
-      return await this.dataSource.transaction(async (manager) => {
+      return await this.dataSource.transaction(EACH_READ_ANEW, async (manager) => {
         const code = batch.code ?? (await nextCode(manager, studioId));
         const { vesselDiameterMm, ...columns } = batch;
         const needed = placesTaken(batch.vessels, vesselDiameterMm);
@@ -128,7 +131,7 @@ export class BatchesRepository {
   }
 
   async insertVerdict(verdict: BurnVerdictEntity, audit: AuditLine): Promise<void> {
-    await this.dataSource.transaction(async (manager) => {
+    await this.dataSource.transaction(EACH_READ_ANEW, async (manager) => {
       await manager.insert(BurnVerdictEntity, verdict);
       await appendAudit(manager, audit);
     });
@@ -143,7 +146,7 @@ export class BatchesRepository {
   ): Promise<Outcome> {
     const refused = new Map<EntityManager, Refusal>();
     try {
-      return await this.dataSource.transaction(async (manager) => {
+      return await this.dataSource.transaction(EACH_READ_ANEW, async (manager) => {
         const result = await manager.update(
           BatchEntity,
           { id: batchId, studioId, version },
@@ -178,14 +181,16 @@ async function shelfFor(
   placing: Placing,
   needed: number,
 ): Promise<ShelfOfRoom | Extract<Refusal, { kind: 'no-such-shelf' | 'shelf-full' }>> {
-  const [shelf] = await manager.query<
-    { room_id: string; capacity: number; name: string; position: number }[]
-  >(
-    `SELECT k.room_id, sh.capacity, k.name, sh.position FROM shelf sh JOIN rack k ON k.id = sh.rack_id
-     WHERE sh.id = ? AND k.studio_id = ? AND sh.taken_away_at IS NULL FOR UPDATE`,
-    [placing.shelfId, studioId],
+  const [shelf] = await manager.query<{ rack_id: string; capacity: number; position: number }[]>(
+    'SELECT rack_id, capacity, position FROM shelf WHERE id = ? AND taken_away_at IS NULL FOR UPDATE',
+    [placing.shelfId],
   );
   if (!shelf) return { kind: 'no-such-shelf' };
+  const [rack] = await manager.query<{ room_id: string; name: string }[]>(
+    'SELECT room_id, name FROM rack WHERE id = ? AND studio_id = ?',
+    [shelf.rack_id, studioId],
+  );
+  if (!rack) return { kind: 'no-such-shelf' };
   if (!placing.overfill) {
     const standing = await manager.query<{ vessels: number; diameter: number }[]>(
       `SELECT b.vessels, d.vessel_diameter_mm AS diameter FROM stay s JOIN batch b ON b.id = s.batch_id JOIN design d ON d.id = b.design_id
@@ -195,9 +200,9 @@ async function shelfFor(
     const taken = standing.reduce((sum, batch) => sum + placesTaken(batch.vessels, batch.diameter), 0);
     const free = Math.max(0, shelf.capacity - taken);
     if (needed > free + 1e-9)
-      return { kind: 'shelf-full', shelf: `Shelf ${shelf.position} of ${shelf.name}`, free, needed };
+      return { kind: 'shelf-full', shelf: `Shelf ${shelf.position} of ${rack.name}`, free, needed };
   }
-  return { roomId: shelf.room_id };
+  return { roomId: rack.room_id };
 }
 
 async function insertStay(

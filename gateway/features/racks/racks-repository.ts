@@ -21,6 +21,9 @@ export type RackChange =
   /** Shelves to be taken away on which batches stand, by position. */
   | { readonly kind: 'shelves-in-use'; readonly positions: readonly number[] };
 
+/** After waiting for a shelf's lock, what others have put there meanwhile must be seen. */
+const EACH_READ_ANEW = 'READ COMMITTED';
+
 /** Racks and shelves. Every read and write names the studio. */
 export class RacksRepository {
   constructor(private readonly dataSource: DataSource) {}
@@ -65,7 +68,7 @@ export class RacksRepository {
     fields: RackFields,
     audit: AuditLine,
   ): Promise<RackChange> {
-    return this.dataSource.transaction(async (manager) => {
+    return this.dataSource.transaction(EACH_READ_ANEW, async (manager) => {
       // The rack's row first, then its shelves: moving a batch locks its shelf alone, so the two cannot deadlock.
       const rack = await manager.findOne(RackEntity, {
         where: { id: rackId, studioId, version },
@@ -109,7 +112,7 @@ export class RacksRepository {
 
   /** Removes a rack and its shelves; false when a batch stands or stood there, and nothing is removed then. */
   async remove(studioId: string, rackId: string, audit: AuditLine): Promise<boolean> {
-    return this.dataSource.transaction(async (manager) => {
+    return this.dataSource.transaction(EACH_READ_ANEW, async (manager) => {
       const shelves = await manager.find(ShelfEntity, {
         where: { rackId },
         lock: { mode: 'pessimistic_write' },
