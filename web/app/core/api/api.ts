@@ -24,7 +24,7 @@ export type CallInput<R extends RouteDefinition> = PathPart<ParamsOf<R>> &
 
 interface LooseInput {
   params?: Record<string, string>;
-  query?: Record<string, unknown>;
+  query?: Record<string, string | number | boolean | null | undefined>;
   body?: unknown;
   anonymous?: boolean;
 }
@@ -72,7 +72,7 @@ export function filled(path: string, params: Record<string, string>): string {
   });
 }
 
-function queryOf(query: Record<string, unknown>): HttpParams {
+function queryOf(query: Record<string, string | number | boolean | null | undefined>): HttpParams {
   let params = new HttpParams();
   for (const [name, value] of Object.entries(query)) {
     if (value === undefined || value === null) continue;
