@@ -68,6 +68,11 @@ export class Estimates {
 
   async stop(): Promise<void> {
     for (const stop of this.#stopping.splice(0)) stop();
+    await this.settled();
+  }
+
+  /** Resolves when everything known to be due has been read. */
+  async settled(): Promise<void> {
     await this.#last;
   }
 
