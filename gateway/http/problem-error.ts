@@ -29,6 +29,8 @@ export class ProblemError extends Error {
     /** A sentence that says what to do. */
     readonly detail: string,
     readonly fields?: readonly { path: string; message: string }[],
+    /** For too-many-tries: when another try makes sense. */
+    readonly retryAfterSeconds?: number,
   ) {
     super(detail);
     this.status = STATUS[code];
