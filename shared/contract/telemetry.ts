@@ -61,6 +61,7 @@ export const senmlRecord = z.looseObject({
   t: z.number().optional(),
   ut: z.number().optional(),
 });
+export type SenmlRecord = z.infer<typeof senmlRecord>;
 export const senmlPack = z.array(senmlRecord).min(1).max(2000);
 
 /** Plausible limits; outside, a reading is quarantined. */
