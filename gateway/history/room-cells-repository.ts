@@ -15,12 +15,24 @@ export interface RoomSensor {
 export interface CellRun {
   readonly fromCell: number;
   readonly celsius: Float64Array;
+  /** %; NaN also where only the temperature was measured. */
+  readonly humidity: Float64Array;
 }
 
 interface CellRow {
   readonly room_id: string;
   readonly cell: number | string;
   readonly celsius: number;
+  readonly humidity: number | null;
+}
+
+/** A run of silence. */
+export function emptyRun(fromCell: number, length: number): CellRun {
+  return {
+    fromCell,
+    celsius: new Float64Array(length).fill(Number.NaN),
+    humidity: new Float64Array(length).fill(Number.NaN),
+  };
 }
 
 /** Reads rooms' ten-minute cells from the five-minute rollups. */
@@ -57,13 +69,12 @@ export class RoomCellsRepository {
    */
   async cells(roomIds: readonly string[], fromCell: number, toCell: number): Promise<Map<string, CellRun>> {
     const length = Math.max(0, toCell - fromCell);
-    const runs = new Map(
-      roomIds.map((id) => [id, { fromCell, celsius: new Float64Array(length).fill(Number.NaN) }] as const),
-    );
+    const runs = new Map(roomIds.map((id) => [id, emptyRun(fromCell, length)] as const));
     if (roomIds.length === 0 || length === 0) return runs;
     const rows = await this.dataSource.query<CellRow[]>(
       `SELECT s.room_id, TIMESTAMPDIFF(SECOND, '1970-01-01', r.bucket) DIV ${CELL_MS / 1000} AS cell,
-              SUM(r.t_sum + r.n * s.offset_celsius * 1e6) / SUM(r.n) / 1e6 AS celsius
+              SUM(r.t_sum + r.n * s.offset_celsius * 1e6) / SUM(r.n) / 1e6 AS celsius,
+              SUM(r.rh_sum + r.rh_n * s.offset_humidity * 1e6) / SUM(r.rh_n) / 1e6 AS humidity
        FROM sensor s JOIN rollup r ON r.sensor_no = s.no AND r.level = 5
        WHERE s.room_id IN (?) AND s.trusted = 1 AND r.n > 0 AND r.bucket >= ? AND r.bucket < ?
          AND (s.retired_at IS NULL OR r.bucket < s.retired_at)
@@ -72,7 +83,10 @@ export class RoomCellsRepository {
     );
     for (const row of rows) {
       const run = runs.get(row.room_id);
-      if (run) run.celsius[Number(row.cell) - fromCell] = row.celsius;
+      const index = Number(row.cell) - fromCell;
+      if (!run) continue;
+      run.celsius[index] = row.celsius;
+      if (row.humidity !== null) run.humidity[index] = Math.min(100, Math.max(0, row.humidity));
     }
     return runs;
   }

@@ -4,7 +4,7 @@ import { RoomHistory } from '#shared/cure/room-history';
 import type { CellsChanged, LayoutChanged } from '../announcements.js';
 import type { Clock } from '../clock.js';
 import type { Feed } from '../feed.js';
-import type { CellRun, RoomSensor } from './room-cells-repository.js';
+import { type CellRun, emptyRun, type RoomSensor } from './room-cells-repository.js';
 
 /** Where the histories read their cells; see RoomCellsRepository. */
 export interface RoomCells {
@@ -126,7 +126,7 @@ export class RoomHistories {
         const runs = await this.parts.cells.cells([...this.#kept.keys()], from, end);
         for (const [roomId, { history }] of this.#kept) {
           changed.set(roomId, startOfSilence(history, from));
-          setCells(history, runs.get(roomId) ?? { fromCell: from, celsius: new Float64Array(0) });
+          setCells(history, runs.get(roomId) ?? emptyRun(from, end - from));
           history.advanceTo(end);
         }
         this.#end = end;
