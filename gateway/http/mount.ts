@@ -10,7 +10,7 @@ export interface Call<R extends RouteDefinition> {
   readonly params: ParamsOf<R>;
   readonly query: QueryOf<R>;
   readonly body: BodyOf<R>;
-  /** The signed-in person. @throws ProblemError sign-in-needed on public routes without one */
+  /** The signed-in person. @throws ProblemError sign-in-needed on public routes, which look at no token */
   readonly person: () => SignedInPerson;
   /** The person as actor, with the role in the path's studio. */
   readonly actor: () => Actor;
@@ -44,7 +44,8 @@ export function mountAll(app: Express, mounted: readonly Mounted[], authenticate
   for (const { route, handler } of mounted) {
     const method = route.method.toLowerCase() as 'get' | 'post' | 'put' | 'patch' | 'delete';
     app[method](route.path, async (request: Request, response: Response, _next: NextFunction) => {
-      const person = await authenticate(bearerOf(request));
+      // A token that has run out must not stand in the way of signing in again.
+      const person = route.scope === 'public' ? null : await authenticate(bearerOf(request));
       const role = checkAccess(route, person, request.params['studioId'] as string | undefined);
       const call: Call<RouteDefinition> = {
         params: parse(route.params, request.params, 'path'),
