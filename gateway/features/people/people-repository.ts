@@ -38,9 +38,11 @@ export interface PersonUpdate {
 export type UpdateOutcome =
   | {
       readonly kind: 'changed';
-      /** Studios whose alerts no longer reach the person. */ readonly unreached: string[];
+      /** Studios whose alerts no longer reach the person. */
+      readonly unreached: string[];
     }
-  | { readonly kind: 'changed-meanwhile' | 'last-owner' };
+  | { readonly kind: 'changed-meanwhile' }
+  | { readonly kind: 'last-owner' };
 
 /** People, their roles and their invitations. */
 export class PeopleRepository {
