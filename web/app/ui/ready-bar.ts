@@ -39,7 +39,7 @@ import { ChangeDetectionStrategy, Component, input } from '@angular/core';
     }
     .whisker {
       inset-block: 1px;
-      border-inline: 2px solid var(--sr-scent-line, var(--sr-copper));
+      border-inline: 2px solid var(--sr-copper);
       background: linear-gradient(var(--sr-copper), var(--sr-copper)) center / 100% 2px no-repeat;
     }
     .whisker.open {
