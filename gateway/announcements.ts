@@ -1,3 +1,5 @@
+import type { Notice } from '#shared/contract/alerts';
+
 /** What the parts of the gateway tell each other after something is safely in the database. */
 
 /** A reading that was committed just now (not a repeat); values as measured, before calibration offsets. */
@@ -47,4 +49,10 @@ export interface PersonChanged {
   readonly reason: 'role-changed' | 'signed-out';
   /** Only this session, or all of them when null. */
   readonly sessionId: string | null;
+}
+
+/** A notice was written for a person; it is shown at once wherever they are signed in. */
+export interface NoticeWritten {
+  readonly personId: string;
+  readonly notice: Notice;
 }
