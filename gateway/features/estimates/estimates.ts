@@ -18,11 +18,12 @@ import {
   estimateView,
   shiftViews,
 } from './estimate-views.js';
+import { type DaysToTest, daysToTest } from './days-to-test.js';
 import { factsAt, questionAbout } from './facts-at.js';
 import { Floor } from './floor.js';
 
 export interface EstimatesParts {
-  readonly facts: Pick<BatchFactsRepository, 'curing' | 'some'>;
+  readonly facts: Pick<BatchFactsRepository, 'curing' | 'some' | 'curedWithin'>;
   readonly histories: RoomHistories;
   readonly clock: Clock;
   /** Announced for every batch whose card may read otherwise than before. */
@@ -155,6 +156,16 @@ export class Estimates {
     const question = questionAbout(facts, instant, new BatchCycles());
     const estimated = estimateBatch(question, this.#historyOf, instant);
     return estimated.known ? curveViews(cureCurve(question, estimated, this.#historyOf)) : [];
+  }
+
+  /** How long the batches of studios took whose wick-test gate was reached in a period; scrapped ones are left out. */
+  async daysToTest(studioIds: readonly string[], from: number, to: number): Promise<DaysToTest[]> {
+    const batches = await this.parts.facts.curedWithin(studioIds, new Date(from), new Date(to));
+    await this.#needHistoriesOf(batches);
+    return batches.flatMap((facts) => {
+      const taken = daysToTest(facts, this.#historyOf, this.parts.histories.end);
+      return taken && taken.reachedAt >= from && taken.reachedAt < to ? [taken] : [];
+    });
   }
 
   /** Hardening and cure age of a batch at an instant, for a test's record; null without readings. */
