@@ -4,6 +4,7 @@ import type { Notice } from '#shared/contract/alerts';
 import { alert } from '#shared/contract/alerts';
 import { batchCard } from '#shared/contract/batches';
 import { ribbon, roomNow } from '#shared/contract/overview';
+import type { Permission } from '#shared/contract/roles';
 
 /** Typed events of the live connection (Socket.IO, WebSocket transport only). */
 
@@ -48,3 +49,17 @@ export interface ClientToServer {
   token: (accessToken: string, done: (taken: boolean) => void) => void;
   resync: (studioId: string, done: (welcome: LiveWelcome | null) => void) => void;
 }
+
+/** Permission a person needs in the studio an event is about; null: events about the own session or person only. */
+export const LIVE_PERMISSIONS = {
+  welcome: null,
+  frame: 'readiness.read',
+  notice: null,
+  layout: 'readiness.read',
+  goodbye: null,
+  token: null,
+  resync: 'readiness.read',
+} as const satisfies Record<keyof ServerToClient | keyof ClientToServer, Permission | null>;
+
+/** Frames hold alerts and what tells of recipes only for people with all of these in the studio; others get them without. */
+export const FULL_FRAME_PERMISSIONS = ['alerts.read', 'batches.recipe'] as const satisfies Permission[];
