@@ -113,7 +113,14 @@ function tooDamp({ now: room, limits }: RoomFacts, formats: RoomFormats, now: nu
 }
 
 function fine(facts: RoomFacts, formats: RoomFormats, now: number): StateWords {
-  const { now: room } = facts;
+  const { now: room, limits } = facts;
+  if (room.celsius !== null && room.celsius > limits.bandHigh) {
+    const limit = room.heatLimit === null ? '' : `, heat limit ${formats.temperatureFigure(room.heatLimit)}`;
+    return {
+      lead: 'Above its band, not yet too warm:',
+      rest: `${formats.temperature(room.celsius)}, band up to ${formats.temperatureFigure(limits.bandHigh)}${limit}.`,
+    };
+  }
   const lasting = room.since === null ? '' : ` for ${formats.duration(now - Date.parse(room.since))}`;
   const slip = Math.round(room.slippedHours);
   const dates =
