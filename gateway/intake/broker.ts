@@ -38,6 +38,7 @@ export class Broker {
   #server: Server | null = null;
   readonly #sockets = new Set<Socket>();
   readonly #devices = new Map<Client, Device | typeof SIMULATOR>();
+  readonly #foreignWills = new WeakSet<Client>();
   #connected: ((deviceId: string, online: boolean) => void) | null = null;
 
   constructor(private readonly parts: BrokerParts) {}
@@ -59,17 +60,23 @@ export class Broker {
     this.#broker = broker;
     broker.preConnect = (client, packet, done) => {
       const will = packet.will?.topic;
-      const allowed = will === undefined || parseReadingTopic(will)?.deviceId === packet.username;
-      if (!allowed) this.parts.log.warn({ client: client.id }, 'a will on a foreign topic was refused');
-      done(null, allowed && this.#sockets.size <= MOST_CONNECTIONS);
+      // Refused with the credentials, where the device is told; here it would only be cut off.
+      if (will !== undefined && parseReadingTopic(will)?.deviceId !== packet.username)
+        this.#foreignWills.add(client);
+      done(null, true);
     };
     broker.authenticate = (client, username, password, done) => {
-      const device = this.#identify(client.id, username ?? '', password);
+      const device = this.#foreignWills.has(client)
+        ? null
+        : this.#identify(client.id, username ?? '', password);
       if (device !== null) {
         this.#devices.set(client, device);
         return done(null, true);
       }
-      this.parts.log.warn({ client: client.id }, 'a device was refused: unknown name or wrong secret');
+      this.parts.log.warn(
+        { client: client.id },
+        'a device was refused: unknown name, wrong secret or a will on a foreign topic',
+      );
       const refusal = Object.assign(new Error('unknown device or wrong secret'), {
         returnCode: BAD_CREDENTIALS,
       });

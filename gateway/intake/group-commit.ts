@@ -11,7 +11,12 @@ export interface PendingMessage {
 }
 
 export interface GroupCommitParts {
-  readonly store: (rows: readonly ReadingRow[], quarantine: readonly QuarantineRow[]) => Promise<StoredBatch>;
+  /** `again`: the same group was sent before and its fate is unknown. */
+  readonly store: (
+    rows: readonly ReadingRow[],
+    quarantine: readonly QuarantineRow[],
+    again: boolean,
+  ) => Promise<StoredBatch>;
   readonly committed: (batch: StoredBatch, quarantine: readonly QuarantineRow[]) => void;
   readonly log: Logger;
   readonly wait?: (ms: number) => Promise<void>;
@@ -81,19 +86,19 @@ export class GroupCommit {
 
   async #storeUntilIn(group: PendingMessage[]): Promise<void> {
     let wait = FIRST_WAIT_MS;
+    let again = false;
     while (!this.#stopped) {
       try {
         const quarantine = group.flatMap((message) => message.quarantine);
-        const batch = await this.parts.store(
-          group.flatMap((message) => message.rows),
-          quarantine,
-        );
+        const rows = group.flatMap((message) => message.rows);
+        const batch = await this.parts.store(rows, quarantine, again);
         this.parts.committed(batch, quarantine);
         this.#finish(group);
         return;
       } catch (error) {
         if (isRefusal(error)) return this.#findRefused(group, error);
         this.#repeatedGroups++;
+        again = true;
         if (isCollision(error)) continue;
         if (wait === FIRST_WAIT_MS)
           this.parts.log.warn({ err: error, waiting: this.depth }, 'readings wait for the database');

@@ -50,7 +50,7 @@ export class Intake {
     this.#database = new ReadingsDatabase(parts.database);
     this.#heard = new HeardCounts(this.#database, parts.log);
     this.#commit = new GroupCommit({
-      store: (rows, quarantine) => this.#database.store(rows, quarantine),
+      store: (rows, quarantine, again) => this.#database.store(rows, quarantine, again),
       committed: (batch, quarantine) => this.#announce(batch, quarantine),
       log: parts.log,
     });

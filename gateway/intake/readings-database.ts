@@ -64,11 +64,18 @@ export class ReadingsDatabase {
     });
   }
 
-  /** Stores a batch; when it resolves, everything is on disk. Safe to repeat after any failure. */
-  async store(rows: readonly ReadingRow[], quarantine: readonly QuarantineRow[]): Promise<StoredBatch> {
+  /**
+   * Stores a batch; when it resolves, everything is on disk. Safe to repeat after any failure.
+   * @param again the same batch was sent before and its fate is unknown: rows found as received then are its own
+   */
+  async store(
+    rows: readonly ReadingRow[],
+    quarantine: readonly QuarantineRow[],
+    again = false,
+  ): Promise<StoredBatch> {
     const connection = await this.#pool.getConnection();
     try {
-      const result = await this.#inTransaction(connection, rows, quarantine);
+      const result = await this.#inTransaction(connection, rows, quarantine, again);
       connection.release();
       return result;
     } catch (error) {
@@ -125,11 +132,12 @@ export class ReadingsDatabase {
     connection: PoolConnection,
     rows: readonly ReadingRow[],
     quarantine: readonly QuarantineRow[],
+    again: boolean,
   ): Promise<StoredBatch> {
     const distinct = distinctByKey(rows);
     await this.#query(connection, 'START TRANSACTION');
-    let { fresh, repeats, conflicts } = await this.#knownSequences(connection, distinct.rows);
-    conflicts = [...distinct.conflicts, ...conflicts];
+    let { fresh, repeats } = await this.#knownSequences(connection, distinct.rows, again);
+    let { conflicts } = distinct;
     repeats += distinct.repeats;
     let ours: readonly ReadingRow[] = [];
     if (fresh.length > 0 && (await this.#insert(connection, fresh)) < fresh.length) {
@@ -137,7 +145,7 @@ export class ReadingsDatabase {
       await this.#query(connection, 'ROLLBACK');
       await this.#query(connection, 'START TRANSACTION');
       const known = await this.#known(connection, fresh);
-      const sorted = sortOut(fresh, known);
+      const sorted = sortOut(fresh, known, again);
       ours = sorted.ours;
       repeats += sorted.repeats;
       conflicts = [...conflicts, ...sorted.conflicts];
@@ -195,9 +203,9 @@ export class ReadingsDatabase {
   }
 
   /** Readings of devices without a clock are known by boot and sequence number. */
-  async #knownSequences(connection: PoolConnection, rows: readonly ReadingRow[]) {
+  async #knownSequences(connection: PoolConnection, rows: readonly ReadingRow[], again: boolean) {
     const sequenced = rows.filter((row) => row.sequence !== null);
-    if (sequenced.length === 0) return { fresh: rows, repeats: 0, conflicts: [] as readonly ReadingRow[] };
+    if (sequenced.length === 0) return { fresh: rows, repeats: 0 };
     const known = new Map<string, number>();
     for (const [sensorNo, ofSensor] of bySensor(sequenced)) {
       const found = await this.#query<RowDataPacket[]>(
@@ -213,11 +221,11 @@ export class ReadingsDatabase {
       if (row.sequence === null) return true;
       const at = known.get(`${row.sensorNo}/${row.sequence.boot}/${row.sequence.seq}`);
       // Known at its own time of receipt: this very batch was committed before, its answer was lost.
-      if (at === undefined || at === row.at) return true;
+      if (at === undefined || (again && at === row.at)) return true;
       repeats++;
       return false;
     });
-    return { fresh, repeats, conflicts: [] as readonly ReadingRow[] };
+    return { fresh, repeats };
   }
 
   async #noteSequences(connection: PoolConnection, rows: readonly ReadingRow[]): Promise<void> {
@@ -316,7 +324,7 @@ function distinctByKey(rows: readonly ReadingRow[]) {
 }
 
 /** Sorts rows by what the database already holds under their keys. */
-function sortOut(rows: readonly ReadingRow[], known: ReadonlyMap<string, KnownReading>) {
+function sortOut(rows: readonly ReadingRow[], known: ReadonlyMap<string, KnownReading>, again: boolean) {
   const fresh: ReadingRow[] = [];
   const ours: ReadingRow[] = [];
   const replaceable: ReadingRow[] = [];
@@ -328,7 +336,7 @@ function sortOut(rows: readonly ReadingRow[], known: ReadonlyMap<string, KnownRe
     else if (!sameValue(row, found.t_micro, found.rh_micro)) {
       const wasDoubtful = (found.flags & FUTURE_FLAG) !== 0 && (row.flags & FUTURE_FLAG) === 0;
       (wasDoubtful ? replaceable : conflicts).push(row);
-    } else if (found.received_at.getTime() === row.receivedAt) ours.push(row);
+    } else if (again && found.received_at.getTime() === row.receivedAt) ours.push(row);
     else repeats++;
   }
   return { fresh, ours, replaceable, conflicts, repeats };
