@@ -7,9 +7,10 @@ export interface LocalDay {
   readonly to: number;
 }
 
-/** The local days that reach into [from, to), oldest first. */
+/** The local days that reach into [from, to), oldest first; none for an empty period. */
 export function localDays(from: number, to: number, timeZone: string): LocalDay[] {
   const days: LocalDay[] = [];
+  if (from >= to) return days;
   let start = DateTime.fromMillis(from, { zone: timeZone }).startOf('day');
   while (start.toMillis() < to) {
     const next = start.plus({ days: 1 }).startOf('day');

@@ -123,37 +123,34 @@ export class RoomSeries {
     const alerts = withAlerts ? await repository.alerts(roomId, from, to, MOST_MARKS) : [];
     const stays = await repository.stays(roomId, from, to, MOST_MARKS);
     const within = (at: Date | null): at is Date => at !== null && at >= from && at < to;
-    const marks = [
-      ...alerts.map((alert) => ({
-        kind: 'alert' as const,
-        from: alert.from.toISOString(),
-        to: alert.to?.toISOString() ?? null,
-        text: ALERT_WORDS[alert.kind],
-        batchId: null,
-        alertId: alert.id,
-      })),
-      ...stays.flatMap(({ batchId, code, pouredAt, from: came, to: left }) => {
-        const mark = (kind: RoomMark['kind'], at: Date, text: string): RoomMark => ({
-          ...{ kind, text, batchId },
-          from: at.toISOString(),
-          to: null,
-          alertId: null,
-        });
-        const poured = came.getTime() === pouredAt.getTime();
-        return [
-          ...(within(came)
-            ? [
-                poured
-                  ? mark('pour', came, `${code} poured and placed here`)
-                  : mark('move-in', came, `${code} moved in`),
-              ]
-            : []),
-          ...(within(left) ? [mark('move-out', left, `${code} left`)] : []),
-        ];
-      }),
-    ];
-    return marks.sort((a, b) => Date.parse(a.from) - Date.parse(b.from));
+    const arrivals = new Set(stays.map((stay) => momentOf(stay.batchId, stay.from)));
+    const departures = new Set(stays.map((stay) => momentOf(stay.batchId, stay.to)));
+    const marks: RoomMark[] = alerts.map((alert) => ({
+      kind: 'alert',
+      from: alert.from.toISOString(),
+      to: alert.to?.toISOString() ?? null,
+      text: ALERT_WORDS[alert.kind],
+      batchId: null,
+      alertId: alert.id,
+    }));
+    for (const { batchId, code, pouredAt, from: came, to: left } of stays) {
+      const mark = (kind: RoomMark['kind'], at: Date, text: string) =>
+        marks.push({ kind, text, batchId, from: at.toISOString(), to: null, alertId: null });
+      // From one shelf to another of the same room is no move in or out of it.
+      if (within(left) && !arrivals.has(momentOf(batchId, left))) mark('move-out', left, `${code} left`);
+      if (!within(came) || departures.has(momentOf(batchId, came))) continue;
+      if (came.getTime() === pouredAt.getTime()) mark('pour', came, `${code} poured and placed here`);
+      else mark('move-in', came, `${code} moved in`);
+    }
+    // Sorting is stable: of two moves at the same time, the one out comes first.
+    return marks
+      .sort((a, b) => Number(b.kind === 'move-out') - Number(a.kind === 'move-out'))
+      .sort((a, b) => Date.parse(a.from) - Date.parse(b.from));
   }
+}
+
+function momentOf(batchId: string, at: Date | null): string {
+  return `${batchId} ${at?.getTime() ?? ''}`;
 }
 
 /** @throws ProblemError bad-input unless the period begins before it ends and is at most five years long */
