@@ -58,10 +58,9 @@ export class TestFloor {
   }
 
   /** Begins again with nothing but the database, as after a restart of the gateway. */
-  async restart(): Promise<void> {
+  async restart(historiesChanged = new Feed<HistoriesChanged>(fail)): Promise<void> {
     await this.#stop();
     const { dataSource } = this.database;
-    const historiesChanged = new Feed<HistoriesChanged>(fail);
     this.histories = new RoomHistories({
       cells: new RoomCellsRepository(dataSource),
       clock: this.clock,

@@ -17,11 +17,12 @@ export class LatestReadings {
 
   constructor(private readonly repository: LatestReadingsRepository) {}
 
-  /** Reads the sensors again, and the newest readings of those not known so far. */
-  async load(): Promise<void> {
+  /** Reads the sensors again, and the newest readings of those not known so far. Returns the rooms whose sensors changed. */
+  async load(): Promise<Set<string>> {
     const sensors = await this.repository.sensors();
     const fresh = sensors.map(({ no }) => no).filter((no) => !this.#newest.has(no));
     for (const reading of await this.repository.newest(fresh)) this.#keep(reading);
+    const before = this.#inRoom;
     this.#sensors = new Map(sensors.map((sensor) => [sensor.no, sensor]));
     this.#inRoom = new Map();
     for (const sensor of sensors) {
@@ -29,6 +30,8 @@ export class LatestReadings {
       if (sensor.battery !== null && !this.#battery.has(sensor.no))
         this.#battery.set(sensor.no, sensor.battery);
     }
+    const rooms = new Set([...before.keys(), ...this.#inRoom.keys()]);
+    return new Set([...rooms].filter((id) => signature(before.get(id)) !== signature(this.#inRoom.get(id))));
   }
 
   /** Takes committed readings; returns those of trusted sensors with their offset applied. Times ahead of ours never count. */
@@ -78,6 +81,10 @@ export class LatestReadings {
     const known = this.#newest.get(reading.sensorNo);
     if (!known || reading.at >= known.at) this.#newest.set(reading.sensorNo, reading);
   }
+}
+
+function signature(sensors: readonly LiveSensor[] | undefined): string {
+  return JSON.stringify((sensors ?? []).map(({ no, offsetCelsius }) => [no, offsetCelsius]));
 }
 
 function mean(values: readonly number[]): number {

@@ -173,11 +173,14 @@ export class RoomsNow {
       if (!room) continue;
       const today = this.#today(room.timeZone, now);
       if (at < today.from || at >= today.to) continue;
-      const peak = this.#peaks.get(roomId);
-      if (peak?.day !== today.from || celsius > peak.celsius)
-        this.#peaks.set(roomId, { day: today.from, celsius });
+      this.#raisePeak(roomId, today.from, celsius);
     }
     this.#look(new Set(counted.map(({ roomId }) => roomId)));
+  }
+
+  #raisePeak(roomId: string, day: number, celsius: number): void {
+    const peak = this.#peaks.get(roomId);
+    if (peak?.day !== day || celsius > peak.celsius) this.#peaks.set(roomId, { day, celsius });
   }
 
   /** Dates changes of condition, and tells the estimates how warm what stands there has it. */
@@ -213,13 +216,14 @@ export class RoomsNow {
   async #load(): Promise<void> {
     const { repository, latest, histories, cells, clock } = this.parts;
     const rooms = await repository.rooms();
-    await latest.load();
+    const relaid = await latest.load();
     const from = histories.end - CELLS_PER_DAY;
     await histories.need(new Map(rooms.map(({ id }) => [id, from])));
     const before = this.#rooms;
     const added = rooms.filter(({ id }) => !before.has(id)).map(({ id }) => id);
     const recent = await cells.cells(added, from, histories.end);
     this.#rooms = new Map(rooms.map((room) => [room.id, room]));
+    for (const id of relaid) this.#peaks.delete(id);
     await this.#loadPeaks(rooms);
     const now = clock.now();
     for (const id of added) {
@@ -242,7 +246,7 @@ export class RoomsNow {
       const day = this.#today(timeZone, now).from;
       const ids = rooms.filter((room) => room.timeZone === timeZone).map(({ id }) => id);
       for (const [roomId, celsius] of await this.parts.repository.peaks(ids, day))
-        this.#peaks.set(roomId, { day, celsius });
+        this.#raisePeak(roomId, day, celsius);
     }
   }
 
