@@ -34,6 +34,8 @@ export const alertFacts = z.object({
   limit: z.number().nullable(),
   /** Dew point °C for condensation. */
   dewPoint: z.number().nullable(),
+  /** Temperature °C of the room where the value is something else (too cold, condensation). */
+  celsius: z.number().nullable().optional(),
   since: f.instant,
   lastHeardAt: f.instant.nullable(),
   batches: z.array(z.object({ id: f.id, code: z.string(), waxFamily: z.string(), shelf: z.string() })),

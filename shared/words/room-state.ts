@@ -155,7 +155,7 @@ function batchesOf(batches: readonly BatchCard[]): string {
 }
 
 /** A wax family as a maker says it: "soy-container" → "soy"; '' when it may not be seen. */
-export function tradeName(family: BatchCard['waxFamily']): string {
+export function tradeName(family: string | null): string {
   return family === null ? '' : family.replace(/-(container|pillar)$/, '');
 }
 
