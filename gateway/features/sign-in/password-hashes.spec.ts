@@ -1,0 +1,58 @@
+import { afterAll, describe, expect, it } from 'vitest';
+import { PasswordHashes } from './password-hashes.js';
+
+describe('PasswordHashes', () => {
+  const hashes = new PasswordHashes();
+  const quick = new PasswordHashes(4);
+  afterAll(() => Promise.all([hashes.close(), quick.close()]));
+
+  it('costs 12 rounds and keeps the thread of readings free', async () => {
+    let turns = 0;
+    let running = true;
+    const turn = () => {
+      turns++;
+      if (running) setImmediate(turn);
+    };
+    turn();
+    const hash = await hashes.hash('copper kettle by noon');
+    running = false;
+    expect(hash).toMatch(/^\$2b\$12\$/);
+    // Computed on this thread it would be three or four turns of 100 ms.
+    expect(turns).toBeGreaterThan(100);
+    expect(await hashes.verify('copper kettle by noon', hash)).toBe(true);
+    expect(await hashes.verify('copper kettle by moon', hash)).toBe(false);
+  });
+
+  it('tells passwords apart that differ only after 72 bytes', async () => {
+    const long = 'k'.repeat(72);
+    const hash = await quick.hash(`${long}one`);
+    expect(await quick.verify(`${long}two`, hash)).toBe(false);
+    expect(await quick.verify(`${long}one`, hash)).toBe(true);
+  });
+
+  it('knows a password however its accents were typed', async () => {
+    expect(await quick.verify('cafe\u0301 am morgen', await quick.hash('caf\u00e9 am morgen'))).toBe(true);
+  });
+
+  it('never lets anybody in without a hash', async () => {
+    expect(await hashes.verify('anything', null)).toBe(false);
+  });
+
+  it('works through many at once and refuses too many', async () => {
+    const all = await Promise.all(Array.from({ length: 20 }, (_, i) => quick.hash(`password number ${i}`)));
+    expect(new Set(all).size).toBe(20);
+    const rush = Array.from({ length: 150 }, (_, i) => quick.hash(`password number ${i}`));
+    const outcomes = await Promise.allSettled(rush);
+    expect(outcomes.filter(({ status }) => status === 'fulfilled').length).toBeGreaterThanOrEqual(100);
+    const refused = outcomes.filter(({ status }) => status === 'rejected') as PromiseRejectedResult[];
+    expect(refused.length).toBeGreaterThan(0);
+    expect(refused[0]?.reason).toMatchObject({ code: 'busy' });
+  });
+
+  it('rejects what waits when it is closed', async () => {
+    const closing = new PasswordHashes(10);
+    const waiting = Promise.allSettled([1, 2, 3, 4].map((i) => closing.hash(`password ${i}`)));
+    await closing.close();
+    expect((await waiting).every(({ status }) => status === 'rejected')).toBe(true);
+  });
+});
