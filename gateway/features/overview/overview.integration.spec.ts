@@ -197,6 +197,14 @@ describe('overview on a real database', () => {
     expect(wall?.now.since).toBe(new Date(NOON - MINUTE).toISOString());
     expect(wall?.ribbon.celsius).toHaveLength(144);
     expect(wall?.ribbon.celsius.slice(-4)).toEqual([16, null, null, null]);
+    const end = cellOf(NOON);
+    expect(roomsNow.ribbonsFrom(new Map([[cold.id, end - 4]]))).toEqual([
+      {
+        roomId: cold.id,
+        ribbon: { from: new Date(NOON - 40 * MINUTE).toISOString(), celsius: [16, null, null, null] },
+      },
+    ]);
+    expect(roomsNow.ribbonsFrom(new Map([[cold.id, end]]))).toEqual([]);
     // exp(−(45000/R)(1/289.15 − 1/294.15)), computed from the stated formula by an independent script.
     expect(wall?.now.slippedHours).toBeCloseTo(24 * (1 - 0.727480675626866), 9);
     const soy = reply.studios[0]?.batches.find(({ id }) => id === soyBatch);

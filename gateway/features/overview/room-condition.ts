@@ -2,6 +2,9 @@ import type { RoomNow } from '#shared/contract/overview';
 
 export type Condition = RoomNow['condition'];
 
+/** A condition, told apart further: a room that is fine may lie in its band or, not yet too warm, above it. */
+export type RoomState = Condition | 'above-band';
+
 /** What is known of a room's air right now. */
 export interface RoomAir {
   readonly celsius: number;
@@ -13,6 +16,7 @@ export interface RoomAir {
 /** What a room's air is held against. */
 export interface RoomBounds {
   readonly bandLow: number;
+  readonly bandHigh: number;
   /** Heat limit in force, °C. */
   readonly heatLimit: number;
   readonly humidityHigh: number;
@@ -24,22 +28,25 @@ export interface RoomBounds {
  * The worst that can be said of a room: silence before anything else, for then nothing is known; heat before cold before damp
  * before swinging. @param swing highest less lowest ten-minute mean of the last 24 hours, K
  */
-export function conditionOf(air: RoomAir | null, bounds: RoomBounds, swing: number): Condition {
+export function stateOf(air: RoomAir | null, bounds: RoomBounds, swing: number): RoomState {
   if (air === null) return 'never-heard';
   if (air.stale) return 'silent';
   if (air.celsius > bounds.heatLimit) return 'heat';
   if (air.celsius < bounds.bandLow) return 'cold';
   if (air.humidity !== null && air.humidity > bounds.humidityHigh) return 'damp';
-  return swing > bounds.swingLimit ? 'swinging' : 'fine';
+  if (swing > bounds.swingLimit) return 'swinging';
+  return air.celsius > bounds.bandHigh ? 'above-band' : 'fine';
 }
 
-/** Whether a ten-minute mean agrees with a condition; for conditions that one cell cannot tell, null. */
+/** Whether a ten-minute mean agrees with a state; for states that one cell cannot tell, null. */
 export function cellAgrees(
-  condition: Condition,
+  state: RoomState,
   cell: { readonly celsius: number; readonly humidity: number | null },
   bounds: RoomBounds,
 ): boolean | null {
-  switch (condition) {
+  const dry = cell.humidity === null || cell.humidity <= bounds.humidityHigh;
+  const mild = cell.celsius <= bounds.heatLimit && cell.celsius >= bounds.bandLow && dry;
+  switch (state) {
     case 'heat':
       return cell.celsius > bounds.heatLimit;
     case 'cold':
@@ -47,11 +54,9 @@ export function cellAgrees(
     case 'damp':
       return cell.humidity === null ? null : cell.humidity > bounds.humidityHigh;
     case 'fine':
-      return (
-        cell.celsius <= bounds.heatLimit &&
-        cell.celsius >= bounds.bandLow &&
-        (cell.humidity === null || cell.humidity <= bounds.humidityHigh)
-      );
+      return mild && cell.celsius <= bounds.bandHigh;
+    case 'above-band':
+      return mild && cell.celsius > bounds.bandHigh;
     case 'swinging':
     case 'silent':
     case 'never-heard':

@@ -10,7 +10,7 @@ import type { Standing } from '../estimates/standing.js';
 import { type LocalDay, localDays } from '../rooms/local-days.js';
 import type { LatestAir, LatestReadings } from './latest-readings.js';
 import type { LatestReadingsRepository, RoomOfStudio } from './latest-readings-repository.js';
-import { cellAgrees, type Condition, conditionOf, type RoomBounds } from './room-condition.js';
+import { cellAgrees, type RoomBounds, type RoomState, stateOf } from './room-condition.js';
 
 export interface RoomsNowParts {
   readonly repository: LatestReadingsRepository;
@@ -24,7 +24,7 @@ export interface RoomsNowParts {
 }
 
 interface Held {
-  readonly condition: Condition;
+  readonly state: RoomState;
   readonly since: number | null;
 }
 
@@ -75,16 +75,21 @@ export class RoomsNow {
 
   /** Ten-minute means of the last 24 hours. */
   ribbons(roomIds: Iterable<string>): { roomId: string; ribbon: Ribbon }[] {
+    return this.ribbonsFrom(new Map([...roomIds].map((roomId) => [roomId, -Infinity])));
+  }
+
+  /** The same from the given cells on; rooms without a finished cell from there on are left out. */
+  ribbonsFrom(fromCells: ReadonlyMap<string, number>): { roomId: string; ribbon: Ribbon }[] {
     const { histories } = this.parts;
-    const first = histories.end - CELLS_PER_DAY;
-    const from = new Date(cellStart(first)).toISOString();
-    return [...roomIds].map((roomId) => {
+    return [...fromCells].flatMap(([roomId, fromCell]) => {
+      const first = Math.max(fromCell, histories.end - CELLS_PER_DAY);
+      if (first >= histories.end) return [];
       const history = histories.peek(roomId);
-      const celsius = Array.from({ length: CELLS_PER_DAY }, (_, index) => {
+      const celsius = Array.from({ length: histories.end - first }, (_, index) => {
         const value = history?.observed(first + index) ?? Number.NaN;
         return Number.isNaN(value) ? null : value;
       });
-      return { roomId, ribbon: { from, celsius } };
+      return [{ roomId, ribbon: { from: new Date(cellStart(first)).toISOString(), celsius } }];
     });
   }
 
@@ -92,7 +97,7 @@ export class RoomsNow {
     const { latest, standing } = this.parts;
     const air = latest.air(room.id, now);
     const bounds = this.#bounds(room);
-    const { condition, since } = this.#hold(room, air, bounds);
+    const { state, since } = this.#hold(room, air, bounds);
     const peak = this.#peaks.get(room.id);
     return {
       roomId: room.id,
@@ -101,7 +106,7 @@ export class RoomsNow {
       dewPoint: air === null || air.humidity === null ? null : dewPoint(air.celsius, air.humidity),
       at: air === null ? null : new Date(air.at).toISOString(),
       stale: air?.stale ?? true,
-      condition,
+      condition: state === 'above-band' ? 'fine' : state,
       since: since === null ? null : new Date(since).toISOString(),
       heatLimit: bounds.heatLimit,
       peakToday: peak?.day === this.#today(room.timeZone, now).from ? peak.celsius : null,
@@ -114,16 +119,16 @@ export class RoomsNow {
   #bounds({ id, limits }: RoomOfStudio): RoomBounds {
     const { bandLow, bandHigh, humidityHigh, swingLimit } = limits;
     const heatLimit = this.parts.standing.heatLimit(id, limits.heatLimit) ?? bandHigh;
-    return { bandLow, heatLimit, humidityHigh, swingLimit };
+    return { bandLow, bandHigh, heatLimit, humidityHigh, swingLimit };
   }
 
-  /** The present condition and since when; a change is dated by the reading that brought it. */
+  /** The present state and since when; a change is dated by the reading that brought it. */
   #hold(room: RoomOfStudio, air: LatestAir | null, bounds: RoomBounds): Held {
-    const condition = conditionOf(air, bounds, this.#swing(room.id));
+    const state = stateOf(air, bounds, this.#swing(room.id));
     const held = this.#held.get(room.id);
-    if (held?.condition === condition) return held;
-    const since = held ? (air?.at ?? null) : this.#sinceByHistory(room.id, condition, air, bounds);
-    const fresh = { condition, since };
+    if (held?.state === state) return held;
+    const since = held ? (air?.at ?? null) : this.#sinceByHistory(room.id, state, air, bounds);
+    const fresh = { state, since };
     this.#held.set(room.id, fresh);
     return fresh;
   }
@@ -131,7 +136,7 @@ export class RoomsNow {
   /** How far back the ten-minute means agree with the condition without a break. */
   #sinceByHistory(
     roomId: string,
-    condition: Condition,
+    state: RoomState,
     air: LatestAir | null,
     bounds: RoomBounds,
     humidity: Float64Array | null = null,
@@ -146,7 +151,7 @@ export class RoomsNow {
         celsius: history.observed(cell),
         humidity: Number.isNaN(percent) ? null : percent,
       };
-      if (Number.isNaN(mean.celsius) || cellAgrees(condition, mean, bounds) !== true) break;
+      if (Number.isNaN(mean.celsius) || cellAgrees(state, mean, bounds) !== true) break;
       since = Math.min(since, cellStart(cell));
     }
     return since;
@@ -230,11 +235,11 @@ export class RoomsNow {
       const room = this.#rooms.get(id);
       if (!room) continue;
       const [air, bounds] = [latest.air(id, now), this.#bounds(room)];
-      const condition = conditionOf(air, bounds, this.#swing(id));
+      const state = stateOf(air, bounds, this.#swing(id));
       const humidity = recent.get(id)?.humidity ?? null;
       this.#held.set(id, {
-        condition,
-        since: this.#sinceByHistory(id, condition, air, bounds, humidity),
+        state,
+        since: this.#sinceByHistory(id, state, air, bounds, humidity),
       });
     }
     this.#look(this.#rooms.keys());
