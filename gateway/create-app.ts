@@ -4,7 +4,8 @@ import express, { type Express, type NextFunction, type Request, type Response }
 import helmet from 'helmet';
 import type { Logger } from 'pino';
 import type { Problem } from '#shared/contract/problem';
-import { type Authenticate, type Mounted, mountAll } from './http/mount.js';
+import { limitAddresses } from './http/address-limits.js';
+import { type Authenticate, type Mounted, bearerOf, mountAll } from './http/mount.js';
 import { ProblemError } from './http/problem-error.js';
 
 export interface AppParts {
@@ -13,6 +14,10 @@ export interface AppParts {
   /** Origins that may send changes; requests of browsers from elsewhere are refused. */
   readonly allowedOrigins: () => readonly string[];
   readonly webDir: string;
+  /** Whether people come by https; browsers are then told never to come by http again. */
+  readonly https: boolean;
+  /** The API's description for signed-in people. */
+  readonly openApi: object;
   /** Whether database and broker work; answers GET /api/health. */
   readonly health: () => Promise<{ ok: boolean; parts: Record<string, string> }>;
   readonly log: Logger;
@@ -23,59 +28,87 @@ export function createApp(parts: AppParts): Express {
   const app = express();
   app.disable('x-powered-by');
   app.set('trust proxy', 'loopback');
-  app.use((request, response, next) => {
-    response.locals['requestId'] = randomUUID();
-    response.set('X-Request-Id', response.locals['requestId'] as string);
-    const startedAt = performance.now();
-    response.on('finish', () => {
-      parts.log.debug(
-        {
-          requestId: response.locals['requestId'] as string,
-          method: request.method,
-          path: request.path,
-          status: response.statusCode,
-          ms: Math.round(performance.now() - startedAt),
-        },
-        'request',
-      );
-    });
-    next();
-  });
-  app.use(
-    helmet({
-      contentSecurityPolicy: {
-        useDefaults: false,
-        directives: {
-          defaultSrc: ["'self'"],
-          baseUri: ["'self'"],
-          connectSrc: ["'self'", 'ws:', 'wss:'],
-          fontSrc: ["'self'"],
-          formAction: ["'self'"],
-          frameAncestors: ["'none'"],
-          imgSrc: ["'self'", 'data:', 'blob:'],
-          objectSrc: ["'none'"],
-          scriptSrc: ["'self'"],
-          // Angular writes component styles as style elements.
-          styleSrc: ["'self'", "'unsafe-inline'"],
-        },
-      },
-      strictTransportSecurity: false,
-      crossOriginEmbedderPolicy: false,
-    }),
-  );
+  app.use(logRequests(parts.log));
+  app.use(protectPages(parts));
   app.get('/api/health', async (_request, response) => {
     const health = await parts.health();
     response.status(health.ok ? 200 : 503).json(health);
   });
   app.use('/api', refuseForeignOrigins(parts.allowedOrigins));
+  limitAddresses(app);
   app.use('/api', express.json({ limit: '256kb', strict: false }));
   mountAll(app, parts.mounted, parts.authenticate);
+  app.get('/api/openapi.json', async (request, response) => {
+    if ((await parts.authenticate(bearerOf(request))) === null)
+      throw new ProblemError('sign-in-needed', 'Sign in first.');
+    response.set('Cache-Control', 'no-store').json(parts.openApi);
+  });
   app.use('/api', () => {
     throw new ProblemError('not-found', 'There is no such address in this API.');
   });
   serveWeb(app, parts.webDir);
   app.use(answerProblems(parts.log));
   return app;
+}
+
+/** One line a request with its id; what links and tokens hold is never written. */
+function logRequests(log: Logger) {
+  return (request: Request, response: Response, next: NextFunction): void => {
+    const requestId = randomUUID();
+    response.locals['requestId'] = requestId;
+    response.set('X-Request-Id', requestId);
+    const startedAt = performance.now();
+    const { method } = request;
+    const path = request.path.replaceAll(LOOKS_SECRET, '…').slice(0, 300);
+    response.on('close', () => {
+      log[response.statusCode < 400 ? 'debug' : 'info'](
+        {
+          requestId,
+          method,
+          path,
+          status: response.statusCode,
+          ms: Math.round(performance.now() - startedAt),
+          personId: response.locals['personId'] as string | undefined,
+          ...(response.writableFinished ? {} : { aborted: true }),
+        },
+        'request',
+      );
+    });
+    next();
+  };
+}
+
+/** Tokens of mailed links have 43 signs; ids have 36. */
+const LOOKS_SECRET = /[\w-]{40,}/g;
+
+function protectPages({ https, allowedOrigins }: AppParts) {
+  return helmet({
+    contentSecurityPolicy: {
+      useDefaults: false,
+      directives: {
+        defaultSrc: ["'self'"],
+        baseUri: ["'self'"],
+        // Older browsers do not count the live connection to the same host as 'self'.
+        connectSrc: [
+          "'self'",
+          () =>
+            allowedOrigins()
+              .map((origin) => origin.replace(/^http/, 'ws'))
+              .join(' '),
+        ],
+        fontSrc: ["'self'"],
+        formAction: ["'self'"],
+        frameAncestors: ["'none'"],
+        imgSrc: ["'self'", 'data:', 'blob:'],
+        objectSrc: ["'none'"],
+        scriptSrc: ["'self'"],
+        // Angular writes component styles as style elements.
+        styleSrc: ["'self'", "'unsafe-inline'"],
+      },
+    },
+    strictTransportSecurity: https ? { maxAge: 31_536_000, includeSubDomains: false } : false,
+    crossOriginEmbedderPolicy: false,
+  });
 }
 
 /** Browsers send Origin and Sec-Fetch-Site with every change; a change from another site is refused. */
@@ -137,16 +170,20 @@ function answerProblems(log: Logger) {
       requestId,
       ...(known.fields ? { fields: [...known.fields] } : {}),
     };
+    if (known.retryAfterSeconds !== undefined) response.set('Retry-After', String(known.retryAfterSeconds));
     response.status(known.status).type('application/problem+json').send(JSON.stringify(body));
   };
 }
 
 function asProblemError(error: unknown): ProblemError {
   if (error instanceof ProblemError) return error;
-  const type = (error as { type?: string } | null)?.type;
+  const { type, status } = (error ?? {}) as { type?: string; status?: number };
   if (type === 'entity.too.large')
     return new ProblemError('too-large', 'That is more than this address takes.');
   if (type === 'entity.parse.failed') return new ProblemError('bad-input', 'The body is not valid JSON.');
+  // Other refusals of the parser and the file server: a broken encoding, a connection cut half way, a path out of the folder.
+  if (type !== undefined && status !== undefined && status < 500)
+    return new ProblemError('bad-input', 'The request could not be read. Send JSON in UTF-8.');
   if (error instanceof URIError) return new ProblemError('bad-input', 'The address is not well formed.');
   return new ProblemError(
     'internal',

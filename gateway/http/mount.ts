@@ -46,6 +46,7 @@ export function mountAll(app: Express, mounted: readonly Mounted[], authenticate
     app[method](route.path, async (request: Request, response: Response, _next: NextFunction) => {
       // A token that has run out must not stand in the way of signing in again.
       const person = route.scope === 'public' ? null : await authenticate(bearerOf(request));
+      if (person) response.locals['personId'] = person.id;
       const role = checkAccess(route, person, request.params['studioId'] as string | undefined);
       const call: Call<RouteDefinition> = {
         params: parse(route.params, request.params, 'path'),
@@ -116,7 +117,8 @@ function parse(schema: z.ZodType, value: unknown, where: string): unknown {
   );
 }
 
-function bearerOf(request: Request): string | null {
+/** The bearer token of a request. */
+export function bearerOf(request: Request): string | null {
   const [scheme, token] = (request.get('authorization') ?? '').split(' ');
   return scheme?.toLowerCase() === 'bearer' && token ? token : null;
 }

@@ -1,6 +1,7 @@
 import type { DataSource } from 'typeorm';
 import type { Studio } from '#shared/contract/studios';
 import { StudioEntity } from '../../database/entities/studio-entity.js';
+import { remakeStudioDays } from '../../history/studio-days.js';
 import { type AuditLine, appendAudit } from '../audit/audit-lines.js';
 
 /** A studio without the role somebody holds in it. */
@@ -43,15 +44,20 @@ export class StudiosRepository {
     });
   }
 
-  /** False when the version is no longer the current one; nothing is changed then. */
+  /**
+   * False when the version is no longer the current one; nothing is changed then. Another time zone has the daily rollups made
+   * anew, from the same transaction on.
+   */
   update(studioId: string, version: number, fields: StudioFields, audit: AuditLine): Promise<boolean> {
     return this.dataSource.transaction(async (manager) => {
+      const before = await manager.findOneBy(StudioEntity, { id: studioId, version });
       const result = await manager.update(
         StudioEntity,
         { id: studioId, version },
         { ...toColumns(fields), version: version + 1 },
       );
       if (result.affected !== 1) return false;
+      if (before?.timeZone !== fields.timeZone) await remakeStudioDays(manager, studioId);
       await appendAudit(manager, audit);
       return true;
     });
