@@ -23,10 +23,10 @@ const DAY_MS = 86_400_000;
 export function nextGate(batch: BatchCard, formats: GateFormats, now: number, withRange = false): NextGate {
   if (batch.ship.state === 'reached') {
     return batch.recheckDue
-      ? { what: 'test', when: 're-check', sentence: 'ready to ship, wick re-check due' }
+      ? { what: '', when: 're-check', sentence: 'ready to ship, wick re-check due' }
       : { what: '', when: 'ready', sentence: 'ready to ship' };
   }
-  if (batch.recheckDue) return { what: 'test', when: 're-check', sentence: 'wick re-check due' };
+  if (batch.recheckDue) return { what: '', when: 're-check', sentence: 'wick re-check due' };
   const tested = batch.wickTest.state === 'reached';
   const gate = tested ? batch.ship : batch.wickTest;
   const what = tested ? 'ship' : 'test';
@@ -37,7 +37,7 @@ export function nextGate(batch: BatchCard, formats: GateFormats, now: number, wi
     return { what, when: 'no date', sentence: `${name} has no date yet` };
   if (Date.parse(gate.t50) <= now) {
     if (gate.blockedBy.includes('no-passing-test'))
-      return { what: 'test', when: 'test due', sentence: 'cured; a passing wick test is missing' };
+      return { what: '', when: 'test due', sentence: 'cured; a passing wick test is missing' };
     return { what, when: 'due now', sentence: `${name} due now` };
   }
   const range = withRange ? halfRange(gate) : '';

@@ -1,5 +1,6 @@
 import type { BatchCard } from '#shared/contract/batches';
 import type { Rack } from '#shared/contract/racks';
+import { list } from '#shared/words/lists';
 
 export interface ReadinessFormats {
   /** "tonight", "tomorrow", "Fri 8 May" */
@@ -95,8 +96,4 @@ function readyPlaces(racks: readonly Rack[], batches: readonly BatchCard[]): str
     const positions = ready.map(({ shelf }) => shelf.position).sort((a, b) => a - b);
     return [`${rack.name} ${positions.length === 1 ? 'shelf' : 'shelves'} ${list(positions.map(String))}`];
   });
-}
-
-function list(parts: readonly string[]): string {
-  return parts.length < 2 ? parts.join('') : `${parts.slice(0, -1).join(', ')} and ${parts.at(-1)}`;
 }

@@ -1,6 +1,7 @@
 import type { BatchCard } from '#shared/contract/batches';
 import type { RoomNow } from '#shared/contract/overview';
 import type { RoomLimits } from '#shared/contract/rooms';
+import { list } from '#shared/words/lists';
 
 /** How figures and times are written; each studio has its own. Instants are ISO 8601 or epoch ms. */
 export interface RoomFormats {
@@ -80,7 +81,8 @@ function tooWarm({ now: room, limits, batches }: RoomFacts, formats: RoomFormats
   ];
   const over = room.celsius === null ? 0 : room.celsius - limit;
   const cool = over > 0.05 ? `cool the room by ${formats.difference(over)}` : 'keep the room cooler';
-  const act = atRisk.length > 0 ? `Move ${codes(atRisk)}, or ${cool}.` : `${capital(cool)}.`;
+  const act =
+    atRisk.length > 0 ? `Move ${list(atRisk.map((batch) => batch.code))}, or ${cool}.` : `${capital(cool)}.`;
   return {
     lead: `Too warm${forWhom}${since(room, formats, now)}:`,
     rest: joined([...figures, act]),
@@ -157,14 +159,6 @@ function batchesOf(batches: readonly BatchCard[]): string {
 /** A wax family as a maker says it: "soy-container" → "soy"; '' when it may not be seen. */
 export function tradeName(family: string | null): string {
   return family === null ? '' : family.replace(/-(container|pillar)$/, '');
-}
-
-/** "L-118, L-121 and L-122"; more than four are counted. */
-export function codes(batches: readonly { readonly code: string }[]): string {
-  const all = batches.map((batch) => batch.code);
-  if (all.length > 4) return `${all.slice(0, 3).join(', ')} and ${all.length - 3} more`;
-  if (all.length < 2) return all.join('');
-  return `${all.slice(0, -1).join(', ')} and ${all.at(-1)}`;
 }
 
 function joined(sentences: readonly string[]): string {

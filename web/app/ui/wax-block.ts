@@ -1,4 +1,4 @@
-import { ChangeDetectionStrategy, Component, input } from '@angular/core';
+import { ChangeDetectionStrategy, Component, computed, input } from '@angular/core';
 import { RouterLink } from '@angular/router';
 import type { BlockView } from './wall-layout';
 
@@ -18,12 +18,15 @@ import type { BlockView } from './wall-layout';
     [style.--h]="percent(block().hardening)"
   >
     <b>{{ block().code }}</b>
-    <span>
+    <span class="next">
       @if (block().what) {
-        <span class="what">{{ block().what }} </span>
+        <span class="what">{{ block().what }}&ngsp;</span>
       }
-      {{ block().when }}</span
-    >
+      @if (day().weekday) {
+        <span class="weekday">{{ day().weekday }}&ngsp;</span>
+      }
+      {{ day().rest }}
+    </span>
     <i class="scent" [style.transform]="'scaleY(' + block().scent + ')'"></i>
     <i class="passed" [style.transform]="'scaleX(' + block().passed + ')'"></i>
     @if (block().gateAt; as at) {
@@ -68,7 +71,7 @@ import type { BlockView } from './wall-layout';
       border-block-start: 3px solid var(--sr-good);
       padding-block-start: 1px;
     }
-    .ready > span {
+    .ready .next {
       color: var(--sr-wax-good);
       font-weight: 700;
     }
@@ -91,10 +94,9 @@ import type { BlockView } from './wall-layout';
     }
     .notch {
       inset-block-end: 0;
-      margin-inline-start: -9px;
-      border: 4.5px solid transparent;
-      border-block: 0 7px solid var(--sr-wax-ink);
-      border-block-start: 0;
+      margin-inline-start: -8px;
+      border-inline: 4.5px solid transparent;
+      border-block-end: 7px solid var(--sr-wax-ink);
     }
     .risk::after {
       content: '';
@@ -108,7 +110,10 @@ import type { BlockView } from './wall-layout';
         display: none;
       }
     }
-    @container (max-width: 56px) {
+    @container (max-width: 62px) {
+      .weekday {
+        display: none;
+      }
       a {
         padding-inline-start: 8px;
         font-size: 12px;
@@ -125,6 +130,12 @@ import type { BlockView } from './wall-layout';
 export class WaxBlock {
   readonly block = input.required<BlockView>();
   readonly tabbable = input(true);
+
+  /** The weekday apart, so that a narrow block can leave it out. */
+  protected readonly day = computed(() => {
+    const [, weekday = '', rest = ''] = /^([A-Z][a-z]{2} )?(.*)$/.exec(this.block().when) ?? [];
+    return { weekday: weekday.trim(), rest };
+  });
 
   protected percent(part: number): string {
     return `${(part * 100).toFixed(1)}%`;

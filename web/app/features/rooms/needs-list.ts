@@ -4,7 +4,7 @@ import { RouterLink } from '@angular/router';
 import { StatusMark } from '../../ui/status-mark';
 import type { NeedLine } from './needs-now';
 
-const SHOWN = 7;
+const SHOWN = 6;
 
 /** The short list of what needs somebody now; each line leads to it and says whose it is. */
 @Component({
@@ -16,7 +16,8 @@ const SHOWN = 7;
         <li>
           <sr-status-mark [status]="line.status" />
           <a [routerLink]="line.link"
-            ><b>{{ line.lead }}</b> <span class="sr-muted">{{ line.rest }}</span></a
+            ><b>{{ line.lead }}</b
+            >&ngsp;<span class="sr-muted">{{ line.rest }}</span></a
           >
           <span class="who">{{ line.who }}</span>
         </li>
@@ -24,8 +25,9 @@ const SHOWN = 7;
         <li class="calm">
           <sr-status-mark status="good" />
           <span
-            ><b>Nothing needs anybody now.</b>
-            <span class="sr-muted">No alert, no rack ready today, no test due.</span></span
+            ><b>Nothing needs anybody now.</b>&ngsp;<span class="sr-muted"
+              >No alert, no rack ready today, no test due.</span
+            ></span
           >
         </li>
       }

@@ -3,7 +3,7 @@ import type { BatchCard } from '#shared/contract/batches';
 import type { RoomNow } from '#shared/contract/overview';
 import type { Rack } from '#shared/contract/racks';
 import { rackReadiness, type RackReadiness } from '#shared/words/rack-readiness';
-import { codes } from '#shared/words/room-state';
+import { list } from '#shared/words/lists';
 import type { StudioFormats } from '../../core/time/studio-formats';
 import type { Status } from '../../ui/status-mark';
 import { alertLine } from './alert-line';
@@ -155,23 +155,24 @@ function testsDue(studio: NeedStudio): NeedLine[] {
       batch.ship.blockedBy.includes('no-passing-test'),
   );
   return [
-    ...byDesign(studio, recheck, 'Wick re-check due', 'the wax has hardened since the last test'),
-    ...byDesign(studio, first, 'Wick test due', 'cured enough for the first test'),
+    ...dueTests(studio, recheck, 'Wick re-check due', 'the wax has hardened since the last test'),
+    ...dueTests(studio, first, 'Wick test due', 'cured enough for the first test'),
   ];
 }
 
-function byDesign(studio: NeedStudio, due: readonly BatchCard[], what: string, why: string): NeedLine[] {
-  const designs = new Map<string, BatchCard[]>();
-  for (const batch of due) {
-    const name = batch.designName ?? batch.code;
-    designs.set(name, [...(designs.get(name) ?? []), batch]);
-  }
-  return [...designs].map(([design, batches]) => ({
-    id: `${what} ${studio.id} ${design}`,
-    status: 'due',
-    lead: `${what}: ${design}`,
-    rest: `${codes(batches)}; ${why}`,
-    who: studio.name,
-    link: ['/batches', batches[0]?.id ?? ''],
-  }));
+/** One line a studio: designs in bold, then the batches to take samples from. */
+function dueTests(studio: NeedStudio, due: readonly BatchCard[], what: string, why: string): NeedLine[] {
+  const [first] = due;
+  if (!first) return [];
+  const designs = [...new Set(due.map((batch) => batch.designName ?? batch.code))];
+  return [
+    {
+      id: `${what} ${studio.id}`,
+      status: 'due',
+      lead: `${studio.name}: ${what.toLowerCase()} for ${list(designs)}`,
+      rest: `${list(due.map((batch) => batch.code))}; ${why}`,
+      who: studio.name,
+      link: due.length === 1 ? ['/batches', first.id] : ['/batches'],
+    },
+  ];
 }
