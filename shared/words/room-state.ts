@@ -81,8 +81,7 @@ function tooWarm({ now: room, limits, batches }: RoomFacts, formats: RoomFormats
   ];
   const over = room.celsius === null ? 0 : room.celsius - limit;
   const cool = over > 0.05 ? `cool the room by ${formats.difference(over)}` : 'keep the room cooler';
-  const act =
-    atRisk.length > 0 ? `Move ${list(atRisk.map((batch) => batch.code))}, or ${cool}.` : `${capital(cool)}.`;
+  const act = atRisk.length > 0 ? `Move ${codes(atRisk)}, or ${cool}.` : `${capital(cool)}.`;
   return {
     lead: `Too warm${forWhom}${since(room, formats, now)}:`,
     rest: joined([...figures, act]),
@@ -159,6 +158,11 @@ function batchesOf(batches: readonly BatchCard[]): string {
 /** A wax family as a maker says it: "soy-container" → "soy"; '' when it may not be seen. */
 export function tradeName(family: string | null): string {
   return family === null ? '' : family.replace(/-(container|pillar)$/, '');
+}
+
+/** "L-118, L-121 and L-122"; more than four are counted. */
+export function codes(batches: readonly { readonly code: string }[]): string {
+  return list(batches.map((batch) => batch.code));
 }
 
 function joined(sentences: readonly string[]): string {

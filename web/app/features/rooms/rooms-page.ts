@@ -11,7 +11,7 @@ import { ErrorNote } from '../../ui/error-note';
 import { LoadingNote } from '../../ui/loading-note';
 import { PageHeader } from '../../ui/page-header';
 import { WallLegend } from '../../ui/wall-legend';
-import { list } from '#shared/words/lists';
+import { codes } from '#shared/words/room-state';
 import { NeedsList } from './needs-list';
 import { needsNow, type NeedStudio } from './needs-now';
 import { RoomCard } from './room-card';
@@ -38,7 +38,7 @@ export class RoomsPage {
         live,
         name: studio.name,
         place: this.place(live),
-        unplaced: unplaced.length === 0 ? '' : list(unplaced.map((batch) => batch.code)),
+        unplaced: unplaced.length === 0 ? '' : codes(unplaced),
         mayWrite: this.session.may('rooms.write', live.id),
       };
     }),
