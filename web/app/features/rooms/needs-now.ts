@@ -3,10 +3,10 @@ import type { BatchCard } from '#shared/contract/batches';
 import type { RoomNow } from '#shared/contract/overview';
 import type { Rack } from '#shared/contract/racks';
 import { rackReadiness, type RackReadiness } from '#shared/words/rack-readiness';
+import { alertPlace, alertWords } from '#shared/words/alert-words';
 import { list } from '#shared/words/lists';
 import type { StudioFormats } from '../../core/time/studio-formats';
 import type { Status } from '../../ui/status-mark';
-import { alertLine } from './alert-line';
 
 /** One thing that needs somebody now. */
 export interface NeedLine {
@@ -75,13 +75,15 @@ export function needsNow(studios: readonly NeedStudio[], now: number): NeedLine[
 }
 
 function ofAlert(studio: NeedStudio, alert: Alert, now: number): NeedLine {
-  const { lead, rest } = alertLine(alert, studio.formats, now);
+  const { headline, figures } = alertWords(alert.facts, studio.formats, now);
+  const matter =
+    alert.facts.sensorName === null ? headline.charAt(0).toLowerCase() + headline.slice(1) : headline;
   const holder = alert.holder?.name ?? 'nobody yet';
   return {
     id: alert.id,
     status: ALERT_STATUS[alert.facts.kind],
-    lead,
-    rest,
+    lead: `${alertPlace(alert.facts)}: ${matter}`,
+    rest: alert.state === 'returned' ? 'Over, but nobody acknowledged it.' : figures,
     who: alert.acknowledged === null && alert.holder !== null ? `${holder}, not yet acknowledged` : holder,
     link: ['/alerts', alert.id],
   };
