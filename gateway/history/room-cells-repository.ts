@@ -19,11 +19,26 @@ export interface CellRun {
   readonly humidity: Float64Array;
 }
 
-interface CellRow {
-  readonly room_id: string;
-  readonly cell: number | string;
-  readonly celsius: number;
-  readonly humidity: number | null;
+/** What several sensors measured in one stretch of time, before their offsets: counts, sums, lowest and highest, in millionths. */
+export interface RollupRow {
+  readonly sensor: RoomSensor;
+  /** Which stretch: whole seconds of the epoch at its start. */
+  readonly second: number;
+  readonly n: number;
+  readonly tSum: number;
+  readonly tMin: number;
+  readonly tMax: number;
+  readonly rhN: number;
+  readonly rhSum: number;
+  readonly rhMin: number | null;
+  readonly rhMax: number | null;
+}
+
+interface Pool {
+  n: number;
+  t: number;
+  rhN: number;
+  rh: number;
 }
 
 /** A run of silence. */
@@ -69,26 +84,67 @@ export class RoomCellsRepository {
    */
   async cells(roomIds: readonly string[], fromCell: number, toCell: number): Promise<Map<string, CellRun>> {
     const length = Math.max(0, toCell - fromCell);
-    const runs = new Map(roomIds.map((id) => [id, emptyRun(fromCell, length)] as const));
-    if (roomIds.length === 0 || length === 0) return runs;
-    const rows = await this.dataSource.query<CellRow[]>(
-      `SELECT s.room_id, TIMESTAMPDIFF(SECOND, '1970-01-01', r.bucket) DIV ${CELL_MS / 1000} AS cell,
-              SUM(r.t_sum + r.n * s.offset_celsius * 1e6) / SUM(r.n) / 1e6 AS celsius,
-              SUM(r.rh_sum + r.rh_n * s.offset_humidity * 1e6) / SUM(r.rh_n) / 1e6 AS humidity
-       FROM sensor s JOIN rollup r ON r.sensor_no = s.no AND r.level = 5
-       WHERE s.room_id IN (?) AND s.trusted = 1 AND r.n > 0 AND r.bucket >= ? AND r.bucket < ?
-         AND (s.retired_at IS NULL OR r.bucket < s.retired_at)
-       GROUP BY s.room_id, cell`,
-      [roomIds, new Date(cellStart(fromCell)), new Date(cellStart(toCell))],
-    );
+    const runs = new Map(roomIds.map((id) => [id, emptyRun(fromCell, length)]));
+    if (length === 0) return runs;
+    const [from, to] = [cellStart(fromCell), cellStart(toCell)];
+    const rows = await this.rollups(await this.sensors(roomIds), 5, CELL_MS / 1000, from, to);
+    const pools = new Map<string, Pool[]>();
     for (const row of rows) {
-      const run = runs.get(row.room_id);
-      const index = Number(row.cell) - fromCell;
-      if (!run) continue;
-      run.celsius[index] = row.celsius;
-      if (row.humidity !== null) run.humidity[index] = Math.min(100, Math.max(0, row.humidity));
+      const { roomId, offsetCelsius, offsetHumidity } = row.sensor;
+      const cells = pools.get(roomId) ?? [];
+      if (cells.length === 0) pools.set(roomId, cells);
+      const index = (row.second * 1000) / CELL_MS - fromCell;
+      const pool = (cells[index] ??= { n: 0, t: 0, rhN: 0, rh: 0 });
+      pool.n += row.n;
+      pool.t += row.tSum + row.n * offsetCelsius * 1e6;
+      pool.rhN += row.rhN;
+      pool.rh += row.rhSum + row.rhN * offsetHumidity * 1e6;
+    }
+    for (const [roomId, cells] of pools) {
+      const run = runs.get(roomId);
+      cells.forEach(({ n, t, rhN, rh }, index) => {
+        if (!run) return;
+        run.celsius[index] = t / n / 1e6;
+        if (rhN > 0) run.humidity[index] = Math.min(100, Math.max(0, rh / rhN / 1e6));
+      });
     }
     return runs;
+  }
+
+  /**
+   * Rollups of a level (5, 60 or 1440 minutes) summed up by sensor in steps of whole seconds of the epoch; a step of null leaves
+   * the buckets as they are. Epoch ms, `to` not included.
+   */
+  async rollups(
+    sensors: readonly RoomSensor[],
+    level: 5 | 60 | 1440,
+    stepSeconds: number | null,
+    from: number,
+    to: number,
+  ): Promise<RollupRow[]> {
+    // Sensors are named by number, not joined: only then are the rows of the period read and no others, however long the past is.
+    const untilOf = new Map<number, RoomSensor[]>();
+    for (const sensor of sensors) {
+      const until = Math.min(to, sensor.retiredAt ?? to);
+      if (until > from) untilOf.set(until, [...(untilOf.get(until) ?? []), sensor]);
+    }
+    const second = `TIMESTAMPDIFF(SECOND, '1970-01-01', bucket)`;
+    const slot = stepSeconds === null ? second : `${second} DIV ${stepSeconds} * ${stepSeconds}`;
+    const found: RollupRow[] = [];
+    for (const [until, group] of untilOf) {
+      const byNo = new Map(group.map((sensor) => [sensor.no, sensor]));
+      const rows = await this.dataSource.query<(Omit<RollupRow, 'sensor'> & { sensor_no: number })[]>(
+        `SELECT sensor_no, ${slot} AS second, SUM(n) + 0e0 AS n, SUM(t_sum) + 0e0 AS tSum, MIN(t_min) AS tMin, MAX(t_max) AS tMax,
+                SUM(rh_n) + 0e0 AS rhN, SUM(rh_sum) + 0e0 AS rhSum, MIN(rh_min) AS rhMin, MAX(rh_max) AS rhMax
+         FROM rollup WHERE sensor_no IN (?) AND level = ${level} AND bucket >= ? AND bucket < ? AND n > 0 GROUP BY sensor_no, second`,
+        [[...byNo.keys()], new Date(from), new Date(until)],
+      );
+      for (const { sensor_no, second: start, ...sums } of rows) {
+        const sensor = byNo.get(sensor_no);
+        if (sensor) found.push({ sensor, second: Number(start), ...sums });
+      }
+    }
+    return found;
   }
 
   /** Last cell before `cell` in which a trusted sensor of the room measured something; null for none. */

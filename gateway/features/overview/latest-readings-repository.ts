@@ -80,15 +80,14 @@ export class LatestReadingsRepository {
     return found;
   }
 
-  /** Highest temperature of rooms from a time on, offsets applied. */
-  async peaks(roomIds: readonly string[], from: number): Promise<Map<string, number>> {
-    if (roomIds.length === 0) return new Map();
-    const rows = await this.dataSource.query<{ room_id: string; peak: number }[]>(
-      `SELECT s.room_id, MAX(r.t_max / 1e6 + s.offset_celsius) AS peak FROM sensor s JOIN rollup r ON r.sensor_no = s.no AND r.level = 5
-       WHERE s.room_id IN (?) AND s.trusted = 1 AND s.retired_at IS NULL AND r.bucket >= ? GROUP BY s.room_id`,
-      [roomIds, new Date(from)],
+  /** Highest temperature of sensors from a time on, as measured. */
+  async peaks(sensorNos: readonly number[], from: number): Promise<Map<number, number>> {
+    if (sensorNos.length === 0) return new Map();
+    const rows = await this.dataSource.query<{ sensor_no: number; peak: number }[]>(
+      'SELECT sensor_no, MAX(t_max) / 1e6 AS peak FROM rollup WHERE sensor_no IN (?) AND level = 5 AND bucket >= ? GROUP BY sensor_no',
+      [sensorNos, new Date(from)],
     );
-    return new Map(rows.map((row) => [row.room_id, row.peak]));
+    return new Map(rows.map((row) => [row.sensor_no, row.peak]));
   }
 }
 

@@ -71,6 +71,22 @@ export class LatestReadings {
     };
   }
 
+  /** Highest temperature of rooms from a time on by what is rolled up, offsets applied. */
+  async peaks(roomIds: readonly string[], from: number): Promise<Map<string, number>> {
+    const sensors = roomIds.flatMap((roomId) => this.#inRoom.get(roomId) ?? []);
+    const measured = await this.repository.peaks(
+      sensors.map(({ no }) => no),
+      from,
+    );
+    const peaks = new Map<string, number>();
+    for (const { no, roomId, offsetCelsius } of sensors) {
+      const peak = measured.get(no);
+      if (peak !== undefined)
+        peaks.set(roomId, Math.max(peak + offsetCelsius, peaks.get(roomId) ?? -Infinity));
+    }
+    return peaks;
+  }
+
   /** Lowest battery of the room's sensors, %; null when none tells. */
   battery(roomId: string): number | null {
     const levels = (this.#inRoom.get(roomId) ?? []).flatMap(({ no }) => this.#battery.get(no) ?? []);

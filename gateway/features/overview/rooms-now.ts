@@ -250,7 +250,7 @@ export class RoomsNow {
     for (const timeZone of new Set(rooms.map((room) => room.timeZone))) {
       const day = this.#today(timeZone, now).from;
       const ids = rooms.filter((room) => room.timeZone === timeZone).map(({ id }) => id);
-      for (const [roomId, celsius] of await this.parts.repository.peaks(ids, day))
+      for (const [roomId, celsius] of await this.parts.latest.peaks(ids, day))
         this.#raisePeak(roomId, day, celsius);
     }
   }

@@ -1,18 +1,6 @@
 import type { DataSource } from 'typeorm';
 import { type AlertKind, alertKind } from '#shared/contract/alerts';
 
-/** Sums over a stretch of time, calibration offsets applied; °C and %. */
-export interface SeriesRow {
-  /** Start of the stretch, epoch ms. */
-  readonly at: number;
-  readonly t: number;
-  readonly tMin: number;
-  readonly tMax: number;
-  readonly rh: number | null;
-  readonly rhMin: number | null;
-  readonly rhMax: number | null;
-}
-
 /** A batch that came to a room or left it. */
 export interface StayMark {
   readonly batchId: string;
@@ -29,9 +17,6 @@ export interface AlertMark {
   readonly to: Date | null;
 }
 
-/** Which rollups a chart is drawn from: five minutes, an hour, or the studio's local day. */
-export type RollupLevel = 5 | 60 | 1440;
-
 /** Reads what a room's chart shows. The studio has been checked by the caller. */
 export class RoomSeriesRepository {
   constructor(private readonly dataSource: DataSource) {}
@@ -42,37 +27,6 @@ export class RoomSeriesRepository {
       [studioId],
     );
     return row?.time_zone ?? 'UTC';
-  }
-
-  /** Trusted sensors pooled in steps of the epoch; a step of null leaves the rollups' own buckets. Stretches of silence are left out. */
-  async rows(
-    roomId: string,
-    level: RollupLevel,
-    stepSeconds: number | null,
-    from: number,
-    to: number,
-  ): Promise<SeriesRow[]> {
-    const second = `TIMESTAMPDIFF(SECOND, '1970-01-01', r.bucket)`;
-    const slot = stepSeconds === null ? second : `${second} DIV ${stepSeconds} * ${stepSeconds}`;
-    const rows = await this.dataSource.query<(Omit<SeriesRow, 'at'> & { slot: number | string })[]>(
-      `SELECT ${slot} AS slot,
-              SUM(r.t_sum + r.n * s.offset_celsius * 1e6) / SUM(r.n) / 1e6 AS t,
-              MIN(r.t_min / 1e6 + s.offset_celsius) AS tMin, MAX(r.t_max / 1e6 + s.offset_celsius) AS tMax,
-              SUM(r.rh_sum + r.rh_n * s.offset_humidity * 1e6) / SUM(r.rh_n) / 1e6 AS rh,
-              MIN(r.rh_min / 1e6 + s.offset_humidity) AS rhMin, MAX(r.rh_max / 1e6 + s.offset_humidity) AS rhMax
-       FROM sensor s JOIN rollup r ON r.sensor_no = s.no AND r.level = ?
-       WHERE s.room_id = ? AND s.trusted = 1 AND r.n > 0 AND r.bucket >= ? AND r.bucket < ?
-         AND (s.retired_at IS NULL OR r.bucket < s.retired_at)
-       GROUP BY slot ORDER BY slot`,
-      [level, roomId, new Date(from), new Date(to)],
-    );
-    return rows.map(({ slot: seconds, t, tMin, tMax, rh, rhMin, rhMax }) => ({
-      at: Number(seconds) * 1000,
-      ...{ t, tMin, tMax },
-      rh: asHumidity(rh),
-      rhMin: asHumidity(rhMin),
-      rhMax: asHumidity(rhMax),
-    }));
   }
 
   /** Stays that began or ended in a period, newest first, at most `limit`. */
@@ -109,9 +63,4 @@ export class RoomSeriesRepository {
       to: row.cleared_at,
     }));
   }
-}
-
-/** An offset must not carry a humidity out of its range. */
-function asHumidity(percent: number | null): number | null {
-  return percent === null ? null : Math.min(100, Math.max(0, percent));
 }

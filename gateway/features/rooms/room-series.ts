@@ -9,11 +9,12 @@ import type { CellRun, RoomCellsRepository } from '../../history/room-cells-repo
 import { ProblemError } from '../../http/problem-error.js';
 import type { StandingBatch } from '../estimates/standing.js';
 import { localDays } from './local-days.js';
-import type { RollupLevel, RoomSeriesRepository, SeriesRow } from './room-series-repository.js';
+import { type PooledRow, poolRows } from './pooled-rows.js';
+import type { RoomSeriesRepository } from './room-series-repository.js';
 
 export interface RoomSeriesParts {
   readonly repository: RoomSeriesRepository;
-  readonly cells: Pick<RoomCellsRepository, 'cells'>;
+  readonly cells: Pick<RoomCellsRepository, 'cells' | 'sensors' | 'rollups'>;
   /** @throws ProblemError not-found for a room of another studio */
   readonly rooms: { get(studioId: string, roomId: string): Promise<Room> };
   readonly standing: { inRoom(roomId: string): StandingBatch[] };
@@ -30,6 +31,9 @@ const DAY_MS = 86_400_000;
 const MOST_POINTS = 2000;
 const MOST_MARKS = 400;
 const LONGEST_DAYS = 5 * 366;
+
+/** Which rollups a chart is drawn from: five minutes, an hour, or the studio's local day. */
+type RollupLevel = 5 | 60 | 1440;
 
 /** Steps a chart may have, minutes, and the rollups they are made from; a day is the studio's local day. */
 const STEPS: readonly { readonly minutes: number; readonly level: RollupLevel }[] = [
@@ -99,7 +103,7 @@ export class RoomSeries {
     until: number,
   ): Promise<SeriesPoint[]> {
     const first = Math.floor(from / stepMs) * stepMs;
-    const rows = await this.parts.repository.rows(roomId, level, stepMs / 1000, first, until);
+    const rows = await this.#rows(roomId, level, stepMs / 1000, first, until);
     const byTime = new Map(rows.map((row) => [row.at, row]));
     const points: SeriesPoint[] = [];
     for (let at = first; at < until; at += stepMs) points.push(toPoint(at, byTime.get(at)));
@@ -109,13 +113,24 @@ export class RoomSeries {
   async #daily(studioId: string, roomId: string, from: number, until: number): Promise<SeriesPoint[]> {
     const days = localDays(from, until, await this.parts.repository.timeZone(studioId));
     const first = days[0]?.from ?? from;
-    const rows = await this.parts.repository.rows(roomId, 1440, null, first, until);
+    const rows = await this.#rows(roomId, 1440, null, first, until);
     let next = 0;
     return days.map((day) => {
       while ((rows[next]?.at ?? Infinity) < day.from) next++;
       const row = rows[next];
       return toPoint(day.from, row && row.at < day.to ? row : undefined);
     });
+  }
+
+  async #rows(
+    roomId: string,
+    level: RollupLevel,
+    stepSeconds: number | null,
+    from: number,
+    to: number,
+  ): Promise<PooledRow[]> {
+    const sensors = await this.parts.cells.sensors([roomId]);
+    return poolRows(await this.parts.cells.rollups(sensors, level, stepSeconds, from, to));
   }
 
   async #marks(roomId: string, from: Date, to: Date, withAlerts: boolean): Promise<RoomMark[]> {
@@ -186,7 +201,7 @@ function valueOrNull(value: number): number | null {
   return Number.isNaN(value) ? null : value;
 }
 
-function toPoint(at: number, row: SeriesRow | undefined): SeriesPoint {
+function toPoint(at: number, row: PooledRow | undefined): SeriesPoint {
   const nothing = { t: null, tMin: null, tMax: null, rh: null, rhMin: null, rhMax: null };
   const { t, tMin, tMax, rh, rhMin, rhMax } = row ?? nothing;
   return {
