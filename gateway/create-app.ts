@@ -5,12 +5,11 @@ import helmet from 'helmet';
 import type { Logger } from 'pino';
 import type { Problem } from '#shared/contract/problem';
 import { limitAddresses } from './http/address-limits.js';
-import { type Authenticate, type Mounted, bearerOf, mountAll } from './http/mount.js';
+import { type Door, type Mounted, bearerOf, mountAll } from './http/mount.js';
 import { ProblemError } from './http/problem-error.js';
 
-export interface AppParts {
+export interface AppParts extends Door {
   readonly mounted: readonly Mounted[];
-  readonly authenticate: Authenticate;
   /** Origins that may send changes; requests of browsers from elsewhere are refused. */
   readonly allowedOrigins: () => readonly string[];
   readonly webDir: string;
@@ -37,7 +36,7 @@ export function createApp(parts: AppParts): Express {
   app.use('/api', refuseForeignOrigins(parts.allowedOrigins));
   limitAddresses(app);
   app.use('/api', express.json({ limit: '256kb', strict: false }));
-  mountAll(app, parts.mounted, parts.authenticate);
+  mountAll(app, parts.mounted, parts);
   app.get('/api/openapi.json', async (request, response) => {
     if ((await parts.authenticate(bearerOf(request))) === null)
       throw new ProblemError('sign-in-needed', 'Sign in first.');

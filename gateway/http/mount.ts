@@ -39,15 +39,22 @@ export function mount<R extends RouteDefinition>(route: R, handler: Handler<R>):
 /** Finds out who sends a request from its bearer token; null without a token. @throws ProblemError for a bad one */
 export type Authenticate = (bearer: string | null) => Promise<SignedInPerson | null>;
 
-/** Puts every mounted route on the app: sign-in, role, input and reply are checked here and nowhere else. */
-export function mountAll(app: Express, mounted: readonly Mounted[], authenticate: Authenticate): void {
+/** What the door asks before a route is answered. */
+export interface Door {
+  readonly authenticate: Authenticate;
+  /** An owner has a role in every studio there is, but not in one that was made up. */
+  readonly studioExists: (studioId: string) => Promise<boolean>;
+}
+
+/** Puts every mounted route on the app: sign-in, role and input are checked here and nowhere else. */
+export function mountAll(app: Express, mounted: readonly Mounted[], door: Door): void {
   for (const { route, handler } of mounted) {
     const method = route.method.toLowerCase() as 'get' | 'post' | 'put' | 'patch' | 'delete';
     app[method](route.path, async (request: Request, response: Response, _next: NextFunction) => {
       // A token that has run out must not stand in the way of signing in again.
-      const person = route.scope === 'public' ? null : await authenticate(bearerOf(request));
+      const person = route.scope === 'public' ? null : await door.authenticate(bearerOf(request));
       if (person) response.locals['personId'] = person.id;
-      const role = checkAccess(route, person, request.params['studioId'] as string | undefined);
+      const role = await checkAccess(route, person, request.params['studioId'] as string | undefined, door);
       const call: Call<RouteDefinition> = {
         params: parse(route.params, request.params, 'path'),
         query: parse(route.query, request.query, 'query'),
@@ -74,11 +81,12 @@ export function mountAll(app: Express, mounted: readonly Mounted[], authenticate
 }
 
 /** Role in the path's studio, after checking that the person may call the route. */
-function checkAccess(
+async function checkAccess(
   route: RouteDefinition,
   person: SignedInPerson | null,
   studioId: string | undefined,
-): Role | null {
+  door: Door,
+): Promise<Role | null> {
   if (route.scope === 'public') return null;
   const known = signedIn(person);
   if (route.scope === 'self') return null;
@@ -88,7 +96,7 @@ function checkAccess(
     return known.owner ? 'owner' : null;
   }
   const role = studioId === undefined ? null : roleIn(known, studioId);
-  if (role === null)
+  if (role === null || studioId === undefined || (known.owner && !(await door.studioExists(studioId))))
     throw new ProblemError('not-found', 'This studio does not exist, or you have no role in it.');
   if (!may(role, route.permission)) throw forbidden();
   return role;

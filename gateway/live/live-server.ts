@@ -58,6 +58,7 @@ export class LiveServer {
   #speed: number;
   #ticking: Promise<void> = Promise.resolve();
   #busy = false;
+  #stopping = false;
 
   constructor(private readonly parts: LiveServerParts) {
     this.#speed = parts.clock.speed();
@@ -87,6 +88,7 @@ export class LiveServer {
 
   /** Says goodbye and closes every connection; the web server itself is left alone. */
   async stop(): Promise<void> {
+    this.#stopping = true;
     clearInterval(this.#timer);
     await this.#ticking;
     for (const socket of this.#io.sockets.sockets.values()) this.#cut(socket, 'gateway-stopping');
@@ -122,7 +124,7 @@ export class LiveServer {
   #mayConnect(request: IncomingMessage): boolean {
     const { origin } = request.headers;
     // Browsers always name the origin; what is no browser cannot be made to connect by another site.
-    return origin === undefined || this.parts.allowedOrigins().includes(origin);
+    return !this.#stopping && (origin === undefined || this.parts.allowedOrigins().includes(origin));
   }
 
   #watch(conn: LiveServerSocket['conn']): void {
@@ -178,7 +180,8 @@ export class LiveServer {
 
   #resync(socket: LiveServerSocket, studioId: unknown): LiveWelcome | null {
     const id = f.id.safeParse(studioId);
-    if (!id.success || !audienceOf(socket.data.person, id.data)) return null;
+    if (!id.success || !this.parts.directory.studios().includes(id.data)) return null;
+    if (!audienceOf(socket.data.person, id.data)) return null;
     return this.#snapshot(socket.data.person, [id.data]);
   }
 

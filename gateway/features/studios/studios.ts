@@ -17,6 +17,9 @@ export interface StudiosParts {
 
 /** Studios and how each is reached. */
 export class Studios {
+  /** Studios are never taken away, so that one seen once need not be looked up again. */
+  readonly #seen = new Set<string>();
+
   constructor(private readonly parts: StudiosParts) {}
 
   /** The studios in which a person holds a role, with that role. */
@@ -26,6 +29,13 @@ export class Studios {
       const role = roleIn(person, studio.id);
       return role === null ? [] : [{ ...studio, role }];
     });
+  }
+
+  async exists(studioId: string): Promise<boolean> {
+    if (this.#seen.has(studioId)) return true;
+    const exists = (await this.parts.repository.find(studioId)) !== null;
+    if (exists) this.#seen.add(studioId);
+    return exists;
   }
 
   /** @throws ProblemError bad-input when a recipient is nobody of the studio (for a new one: no owner) */
