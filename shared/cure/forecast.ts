@@ -42,9 +42,10 @@ export function integralVariance(hours: number, sigmaDrift = SIGMA_DRIFT): numbe
  * (d per kJ/mol), and the variance V_f (d²). Grown as far as somebody asks; shared by all batches of the class in the room.
  */
 export class Forecast {
-  readonly #rates: number[] = [0];
-  readonly #perKelvin: number[] = [0];
-  readonly #perEnergy: number[] = [0];
+  #rates = new Float64Array(1);
+  #perKelvin = new Float64Array(1);
+  #perEnergy = new Float64Array(1);
+  #known = 0;
 
   constructor(
     readonly start: ForecastStart,
@@ -73,20 +74,44 @@ export class Forecast {
   variance(n: number): number {
     if (n === 0) return 0;
     const mean = (this.perKelvin(n) * CELLS_PER_DAY) / n;
-    return (mean ** 2 * integralVariance(n / CELLS_PER_HOUR)) / 576;
+    return (mean * mean * varianceAfter(n)) / 576;
   }
 
   #grow(n: number): void {
-    for (let index = this.#rates.length; index <= n; index++) {
+    if (n <= this.#known) return;
+    if (n >= this.#rates.length) {
+      const capacity = Math.max(n + 1, Math.min(HORIZON + 1, 2 * this.#rates.length));
+      this.#rates = enlarged(this.#rates, capacity);
+      this.#perKelvin = enlarged(this.#perKelvin, capacity);
+      this.#perEnergy = enlarged(this.#perEnergy, capacity);
+    }
+    for (let index = this.#known + 1; index <= n; index++) {
       const celsius = forecastCelsius(this.start, this.start.cell + index - 1);
       const days = rate(celsius, this.kinetic) / CELLS_PER_DAY;
-      this.#rates.push((this.#rates[index - 1] ?? 0) + days);
-      this.#perKelvin.push(
-        (this.#perKelvin[index - 1] ?? 0) + days * temperatureSensitivity(celsius, this.kinetic),
-      );
-      this.#perEnergy.push(
-        (this.#perEnergy[index - 1] ?? 0) + days * energySensitivity(celsius, this.kinetic),
-      );
+      this.#rates[index] = (this.#rates[index - 1] ?? 0) + days;
+      this.#perKelvin[index] =
+        (this.#perKelvin[index - 1] ?? 0) + days * temperatureSensitivity(celsius, this.kinetic);
+      this.#perEnergy[index] =
+        (this.#perEnergy[index - 1] ?? 0) + days * energySensitivity(celsius, this.kinetic);
     }
+    this.#known = n;
   }
+}
+
+function enlarged(sums: Float64Array, capacity: number): Float64Array<ArrayBuffer> {
+  const larger = new Float64Array(capacity);
+  larger.set(sums);
+  return larger;
+}
+
+/** integralVariance after whole cells; the same for every room and wax, so each is computed once. */
+const VARIANCES = new Float64Array(HORIZON + 1).fill(NaN);
+
+function varianceAfter(cells: number): number {
+  let variance = VARIANCES[cells] ?? NaN;
+  if (Number.isNaN(variance)) {
+    variance = integralVariance(cells / CELLS_PER_HOUR);
+    VARIANCES[cells] = variance;
+  }
+  return variance;
 }

@@ -2,7 +2,7 @@ import { HORIZON } from '#shared/cure/forecast';
 import type { Forecast } from '#shared/cure/forecast';
 import { CELLS_PER_HOUR, cellStart } from '#shared/cure/grid';
 import type { KineticClass } from '#shared/cure/kinetics';
-import type { Outlook } from '#shared/cure/outlook';
+import { cellsReaching, type Outlook } from '#shared/cure/outlook';
 import { type ClockSums, type Doubt, readyChance, readyScore, SCORE_AT } from '#shared/cure/readiness';
 import { cellReaching, type Segment } from '#shared/cure/stays';
 
@@ -41,6 +41,8 @@ interface GateQuestion {
 
 /** The chance is looked at once an hour, then cell by cell in the hour in which it passes the level. */
 const STRIDE = CELLS_PER_HOUR;
+/** What rounding may add to or take from a sum of days. */
+const ROUNDING = 1e-9;
 
 /**
  * A gate with two clocks: reached when both have gathered their days (tolerance 1e-9 d); otherwise the first forecast cells after
@@ -58,11 +60,18 @@ export function estimateGate(question: GateQuestion): GateEstimate {
   };
   const scoreNow = scoreAfter(0);
   const timeOf = (cells: number | null) => (cells === null ? null : cellStart(outlook.from + cells));
-  const first = (score: number, from: number): number | null =>
-    scoreNow >= score ? null : firstCellAt(scoreAfter, score, from);
-  const t10 = first(SCORE_AT.t10, 1);
-  const t50 = first(SCORE_AT.t50, t10 ?? 1);
-  const t90 = first(SCORE_AT.t90, t50 ?? 1);
+  // A later level is never reached before an earlier one, nor at all if that one is not.
+  let from: number | null = 1;
+  const first = (score: number): number | null => {
+    if (scoreNow >= score) return null;
+    const earliest = from === null ? null : earliestCell(ahead, score, doubt);
+    from =
+      from === null || earliest === null ? null : firstCellAt(scoreAfter, score, Math.max(from, earliest));
+    return from;
+  };
+  const t10 = first(SCORE_AT.t10);
+  const t50 = first(SCORE_AT.t50);
+  const t90 = first(SCORE_AT.t90);
   const reached = clocks.map((clock) => cellReaching(segments, clock.kinetic, clock.needed));
   const [a, b] = reached;
   const reachedAt =
@@ -86,6 +95,26 @@ function gathered(sums: ClockSums, forecast: Forecast, cells: number): ClockSums
     perEnergy: sums.perEnergy + forecast.perEnergy(cells),
     variance: sums.variance + forecast.variance(cells),
   };
+}
+
+/**
+ * Forecast cells before which a score cannot be reached: it needs ln(τ/D) ≥ score·s on both clocks, and s is never below cv_D.
+ * For a negative score that says nothing, 1; null beyond the horizon.
+ */
+function earliestCell(
+  ahead: readonly { readonly clock: Clock; readonly forecast: Forecast }[],
+  score: number,
+  doubt: Doubt,
+): number | null {
+  if (score < SCORE_AT.t50) return 1;
+  let earliest = 1;
+  for (const { clock, forecast } of ahead) {
+    const days = clock.needed * Math.exp(Math.max(0, score) * doubt.cvD) * (1 - ROUNDING);
+    const cells = cellsReaching(forecast, days - clock.sums.days);
+    if (cells === null) return null;
+    earliest = Math.max(earliest, cells);
+  }
+  return earliest;
 }
 
 /** Fewest forecast cells, from `from` on, after which the score is reached; null beyond the horizon. */

@@ -12,18 +12,6 @@ export class GrowingSum {
     return (this.#sums[to] ?? NaN) - (this.#sums[from] ?? NaN);
   }
 
-  /** First index in [from, to) after whose term the sum since `from` is at least `amount`; null when it is never reached. */
-  firstReaching(from: number, to: number, amount: number): number | null {
-    if (!(this.between(from, to) >= amount)) return null;
-    let [low, high] = [from, to - 1];
-    while (low < high) {
-      const middle = (low + high) >> 1;
-      if (this.between(from, middle + 1) >= amount) high = middle;
-      else low = middle + 1;
-    }
-    return from < to ? low : null;
-  }
-
   /** Forgets the sums that contain the term at `index` or a later one. */
   forgetFrom(index: number): void {
     this.#known = Math.min(this.#known, index);

@@ -41,12 +41,42 @@ export interface KineticClass {
   readonly softC: number;
 }
 
+/** One object for all kinetics with the same numbers, so that a class can be recognised by identity. */
+const CLASSES = new Map<string, KineticClass>();
+const CLASSES_OF = new WeakMap<
+  CureKinetics,
+  { readonly hardening: KineticClass; readonly scent: KineticClass }
+>();
+
+function classesOf(kinetics: CureKinetics) {
+  let classes = CLASSES_OF.get(kinetics);
+  if (!classes) {
+    const { hardeningEnergy, scentEnergy, capC, softC } = kinetics;
+    classes = {
+      hardening: classWith(hardeningEnergy, capC, softC),
+      scent: classWith(scentEnergy, capC, softC),
+    };
+    CLASSES_OF.set(kinetics, classes);
+  }
+  return classes;
+}
+
+function classWith(energy: number, capC: number, softC: number): KineticClass {
+  const key = `${energy}|${capC}|${softC}`;
+  let known = CLASSES.get(key);
+  if (!known) {
+    known = { energy, capC, softC };
+    CLASSES.set(key, known);
+  }
+  return known;
+}
+
 export function hardeningClass(kinetics: CureKinetics): KineticClass {
-  return { energy: kinetics.hardeningEnergy, capC: kinetics.capC, softC: kinetics.softC };
+  return classesOf(kinetics).hardening;
 }
 
 export function scentClass(kinetics: CureKinetics): KineticClass {
-  return { energy: kinetics.scentEnergy, capC: kinetics.capC, softC: kinetics.softC };
+  return classesOf(kinetics).scent;
 }
 
 /**

@@ -31,16 +31,19 @@ export interface ClockSums {
 
 /** sd of ln τ from everything but the days D: energy, sensor bias, gaps and forecast. */
 export function ageSpread(sums: ClockSums, doubt: Doubt): number {
+  return Math.sqrt(ageVariance(sums, doubt));
+}
+
+function ageVariance(sums: ClockSums, doubt: Doubt): number {
   if (sums.days === 0) return 0;
-  return Math.sqrt(
-    ((doubt.sdEnergy * sums.perEnergy) ** 2 + (doubt.sdRoom * sums.perKelvin) ** 2 + sums.variance) /
-      sums.days ** 2,
-  );
+  const energy = doubt.sdEnergy * sums.perEnergy;
+  const room = doubt.sdRoom * sums.perKelvin;
+  return (energy * energy + room * room + sums.variance) / (sums.days * sums.days);
 }
 
 /** sd s of ln(τ/D), the days' own doubt included. */
 export function readySpread(sums: ClockSums, doubt: Doubt): number {
-  return Math.hypot(doubt.cvD, ageSpread(sums, doubt));
+  return Math.sqrt(doubt.cvD ** 2 + ageVariance(sums, doubt));
 }
 
 /** u/s with u = ln(τ/D): the chance of being ready is Φ of it. −∞ when nothing has been gathered. */

@@ -1,25 +1,8 @@
-import { CELLS_PER_DAY } from '#shared/cure/grid';
+import { ClassIntegrals, type StretchSums } from '#shared/cure/class-integrals';
 import { Forecast, type ForecastStart } from '#shared/cure/forecast';
 import { fillGap, type FilledGap, learnUsualDay } from '#shared/cure/gaps';
-import { energySensitivity, type KineticClass, rate, temperatureSensitivity } from '#shared/cure/kinetics';
+import type { KineticClass } from '#shared/cure/kinetics';
 import { GrowingSum } from '#shared/cure/growing-sum';
-
-/** Sums over a stretch of a room's history for one kinetic class. */
-export interface StretchSums {
-  /** Equivalent days. */
-  readonly days: number;
-  /** Σ rate·κ, d/K. */
-  readonly perKelvin: number;
-  /** Σ rate·κ_E, d per kJ/mol. */
-  readonly perEnergy: number;
-}
-
-interface ClassSums {
-  readonly kinetic: KineticClass;
-  readonly days: GrowingSum;
-  readonly perKelvin: GrowingSum;
-  readonly perEnergy: GrowingSum;
-}
 
 /** A gap as one batch sees it. */
 export interface GapInStretch {
@@ -41,9 +24,9 @@ export class RoomHistory {
   #filledTo = 0;
   #gaps: FilledGap[] = [];
   #rewrites = 0;
-  readonly #classes = new Map<string, ClassSums>();
+  readonly #classes = new Map<KineticClass, ClassIntegrals>();
   readonly #degreeHours = new Map<number, GrowingSum>();
-  readonly #forecasts = new Map<string, Forecast>();
+  readonly #forecasts = new Map<KineticClass, Forecast>();
   #forecastStart: ForecastStart | null = null;
 
   /** @param origin first cell of the history */
@@ -106,18 +89,12 @@ export class RoomHistory {
 
   /** Equivalent days and their sensitivities gained in the cells [from, to) of the history. */
   sums(kinetic: KineticClass, from: number, to: number): StretchSums {
-    const sums = this.#classOf(kinetic);
-    const [start, end] = [this.#index(from), this.#index(to)];
-    return {
-      days: sums.days.between(start, end),
-      perKelvin: sums.perKelvin.between(start, end),
-      perEnergy: sums.perEnergy.between(start, end),
-    };
+    return this.#classOf(kinetic).between(this.#index(from), this.#index(to));
   }
 
   /** First cell in [from, to) after which the days gained since `from` reach `days`; null when they do not. */
   cellReaching(kinetic: KineticClass, from: number, to: number, days: number): number | null {
-    const index = this.#classOf(kinetic).days.firstReaching(this.#index(from), this.#index(to), days);
+    const index = this.#classOf(kinetic).firstReaching(this.#index(from), this.#index(to), days);
     return index === null ? null : this.origin + index;
   }
 
@@ -155,11 +132,10 @@ export class RoomHistory {
         hours: learnUsualDay(this.observed, this.origin, from).hours,
       };
     }
-    const key = keyOf(kinetic);
-    let forecast = this.#forecasts.get(key);
+    let forecast = this.#forecasts.get(kinetic);
     if (!forecast) {
       forecast = new Forecast(this.#forecastStart, kinetic);
-      this.#forecasts.set(key, forecast);
+      this.#forecasts.set(kinetic, forecast);
     }
     return forecast;
   }
@@ -172,20 +148,12 @@ export class RoomHistory {
     return index;
   }
 
-  #classOf(kinetic: KineticClass): ClassSums {
+  #classOf(kinetic: KineticClass): ClassIntegrals {
     this.#fill();
-    const key = keyOf(kinetic);
-    let sums = this.#classes.get(key);
+    let sums = this.#classes.get(kinetic);
     if (!sums) {
-      const at = (index: number) => this.#filled[index] ?? NaN;
-      const days = (index: number) => rate(at(index), kinetic) / CELLS_PER_DAY;
-      sums = {
-        kinetic,
-        days: new GrowingSum(days),
-        perKelvin: new GrowingSum((index) => days(index) * temperatureSensitivity(at(index), kinetic)),
-        perEnergy: new GrowingSum((index) => days(index) * energySensitivity(at(index), kinetic)),
-      };
-      this.#classes.set(key, sums);
+      sums = new ClassIntegrals(kinetic, (index) => this.#filled[index] ?? NaN);
+      this.#classes.set(kinetic, sums);
     }
     return sums;
   }
@@ -216,11 +184,7 @@ export class RoomHistory {
       this.#gaps.pop();
     }
     this.#filledTo = from;
-    for (const sums of this.#classes.values()) {
-      sums.days.forgetFrom(from);
-      sums.perKelvin.forgetFrom(from);
-      sums.perEnergy.forgetFrom(from);
-    }
+    for (const sums of this.#classes.values()) sums.forgetFrom(from);
     for (const sum of this.#degreeHours.values()) sum.forgetFrom(from);
   }
 
@@ -258,8 +222,4 @@ export class RoomHistory {
     }
     return low;
   }
-}
-
-function keyOf(kinetic: KineticClass): string {
-  return `${kinetic.energy}|${kinetic.capC}|${kinetic.softC}`;
 }

@@ -1,9 +1,10 @@
 /** Median: the middle value, or the mean of the two middle ones. @throws RangeError for an empty list */
 export function median(values: readonly number[]): number {
-  return medianOfSorted([...values].sort((a, b) => a - b));
+  // Typed arrays sort by number without asking a function for every pair.
+  return medianOfSorted(Float64Array.from(values).sort());
 }
 
-function medianOfSorted(sorted: readonly number[]): number {
+function medianOfSorted(sorted: Float64Array): number {
   const middle = sorted.length >> 1;
   const upper = sorted[middle];
   if (upper === undefined) throw new RangeError('The median of no values does not exist.');
