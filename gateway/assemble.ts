@@ -4,6 +4,7 @@ import type { AddressInfo } from 'node:net';
 import type { Logger } from 'pino';
 import type { DataSource } from 'typeorm';
 import { ALL_ROUTES } from '#shared/contract/all-routes';
+import { assembleAlerts, assembleWatch } from './assemble-alerts.js';
 import { assembleDoors, type Doors } from './assemble-doors.js';
 import { assembleFloor, type Floor } from './assemble-floor.js';
 import { AdjustableClock, type Clock, systemClock } from './clock.js';
@@ -19,6 +20,7 @@ import { Intake } from './intake/intake.js';
 import { FrameCollector } from './live/frame-collector.js';
 import { LiveServer } from './live/live-server.js';
 import { RoomDirectory } from './live/room-directory.js';
+import type { Alerts } from './features/alerts/alerts.js';
 import { Sensors } from './features/sensors/sensors.js';
 import { SensorsRepository } from './features/sensors/sensors-repository.js';
 import { mountSensors } from './features/sensors/sensors-routes.js';
@@ -72,16 +74,20 @@ export function assemble(settings: Settings, log: Logger): Gateway {
   });
   const intake = assembleIntake(base);
   const doors = assembleDoors({ ...base, systemClock, timeZoneChanged: () => rollups.forgetPlaces() });
-  const floor = assembleFloorOf(base, doors);
-  const mounted = [...doors.mounted, ...floor.mounted, ...mountSensors(assembleSensors(base, floor, intake))];
+  const alerts = assembleAlerts({ ...base, systemClock });
+  const floor = assembleFloorOf(base, doors, alerts);
+  const sensors = assembleSensors(base, floor, intake);
+  const watch = assembleWatch({ ...base, systemClock }, alerts, floor, sensors);
+  const mounted = [...doors.mounted, ...floor.mounted, ...mountSensors(sensors), ...watch.mounted];
   const http = createServer();
   http.on('request', assembleApp(base, mounted, doors, http, new Health(base, intake)));
-  const live = assembleLive(base, doors, floor, http);
+  const live = assembleLive(base, doors, floor, alerts, http);
   const parts: Part[] = [
     databasePart(base),
     { name: 'sign-in', stop: () => doors.stop() },
     { name: 'cure floor', start: () => floor.start(), stop: () => floor.stop() },
     { name: 'rollups', start: () => rollups.start(), stop: () => rollups.stop() },
+    { name: 'alerts', start: () => watch.start(), stop: () => watch.stop() },
     httpPart(http, settings),
     // Stops before the web server: its connections would keep that open.
     live,
@@ -105,7 +111,7 @@ function assembleIntake({ settings, dataSource, feeds, clock, log }: Base): Inta
   });
 }
 
-function assembleFloorOf({ dataSource, clock, feeds, failed }: Base, doors: Doors): Floor {
+function assembleFloorOf({ dataSource, clock, feeds, failed }: Base, doors: Doors, alerts: Alerts): Floor {
   return assembleFloor({
     ...{ dataSource, clock, failed },
     committed: feeds.readings,
@@ -113,7 +119,7 @@ function assembleFloorOf({ dataSource, clock, feeds, failed }: Base, doors: Door
     layout: feeds.layout,
     batches: feeds.batches,
     studios: doors.studios,
-    alerts: { openIn: async () => [] },
+    alerts,
   });
 }
 
@@ -148,7 +154,7 @@ function assembleApp(
   });
 }
 
-function assembleLive(base: Base, doors: Doors, floor: Floor, http: HttpServer): Part {
+function assembleLive(base: Base, doors: Doors, floor: Floor, alerts: Alerts, http: HttpServer): Part {
   const { dataSource, feeds, clock, log, settings } = base;
   const directory = new RoomDirectory(dataSource);
   const collector = new FrameCollector(
@@ -156,7 +162,7 @@ function assembleLive(base: Base, doors: Doors, floor: Floor, http: HttpServer):
       roomNow: (roomIds) => floor.roomsNow.of(roomIds),
       ribbons: (fromCells) => floor.roomsNow.ribbonsFrom(fromCells),
       cards: (batchIds, forViewer) => floor.estimates.cards(batchIds, forViewer),
-      alerts: async () => [],
+      alerts: (alertIds) => alerts.byIds(alertIds),
     },
     clock,
   );

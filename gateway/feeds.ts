@@ -16,6 +16,8 @@ export interface Feeds {
   readonly layout: Feed<LayoutChanged>;
   readonly batches: Feed<BatchesChanged>;
   readonly alerts: Feed<AlertChanged>;
+  /** Somebody changed an alert or the alert rules of a room. */
+  readonly rules: Feed<LayoutChanged>;
   readonly people: Feed<PersonChanged>;
   readonly notices: Feed<NoticeWritten>;
 }
@@ -28,6 +30,7 @@ export function createFeeds(failed: (error: unknown) => void): Feeds {
     layout: new Feed(failed),
     batches: new Feed(failed),
     alerts: new Feed(failed),
+    rules: new Feed(failed),
     people: new Feed(failed),
     notices: new Feed(failed),
   };

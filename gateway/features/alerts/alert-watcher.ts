@@ -5,6 +5,7 @@ import type {
   CommittedReading,
   LayoutChanged,
   NoticeWritten,
+  PersonChanged,
 } from '../../announcements.js';
 import type { Clock } from '../../clock.js';
 import type { Feed } from '../../feed.js';
@@ -27,6 +28,9 @@ export interface AlertWatcherParts extends SightingsParts {
   readonly committed: Feed<readonly CommittedReading[]>;
   readonly batches: Feed<BatchesChanged>;
   readonly layout: Feed<LayoutChanged>;
+  /** Somebody changed an alert or the rules of a room. */
+  readonly rules: Feed<LayoutChanged>;
+  readonly people: Feed<PersonChanged>;
   readonly changed: Feed<AlertChanged>;
   readonly notices: Feed<NoticeWritten>;
   readonly log: Logger;
@@ -68,6 +72,8 @@ export class AlertWatcher {
       this.parts.committed.listen((readings) => this.#take(readings)),
       this.parts.batches.listen(({ studioId }) => this.#touchStudio(studioId)),
       this.parts.layout.listen(() => (this.#layoutChanged = true)),
+      this.parts.rules.listen(() => (this.#layoutChanged = true)),
+      this.parts.people.listen(() => (this.#layoutChanged = true)),
     ];
     for (const roomId of this.#rooms.keys()) this.#touched.add(roomId);
     this.#timer = setInterval(() => void this.tick(), TICK_MS);
@@ -86,11 +92,6 @@ export class AlertWatcher {
       .then(() => this.#look())
       .catch((error: unknown) => this.parts.log.warn({ err: error }, 'alerts wait for the database'));
     return this.#turn;
-  }
-
-  /** Reads live alerts again after somebody acknowledged, shelved or handed one over. */
-  alertTouched(): void {
-    this.#layoutChanged = true;
   }
 
   #take(readings: readonly CommittedReading[]): void {

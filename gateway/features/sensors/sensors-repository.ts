@@ -1,4 +1,4 @@
-import type { DataSource, EntityManager } from 'typeorm';
+import { type DataSource, type EntityManager, IsNull } from 'typeorm';
 import type { z } from 'zod';
 import type { quarantined } from '#shared/contract/sensors';
 import { SensorEntity } from '../../database/entities/sensor-entity.js';
@@ -52,6 +52,12 @@ export class SensorsRepository {
     const rows = await this.dataSource
       .getRepository(SensorEntity)
       .find({ where: { studioId }, order: { name: 'ASC', no: 'ASC' } });
+    return rows.map(toKept);
+  }
+
+  /** Sensors in service of every studio. */
+  async inService(): Promise<KeptSensor[]> {
+    const rows = await this.dataSource.getRepository(SensorEntity).find({ where: { retiredAt: IsNull() } });
     return rows.map(toKept);
   }
 

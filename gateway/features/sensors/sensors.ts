@@ -6,7 +6,7 @@ import type { Clock } from '../../clock.js';
 import type { Actor } from '../../http/actor.js';
 import { changedMeanwhile, notFound, ProblemError } from '../../http/problem-error.js';
 import { hashDeviceSecret } from '../../intake/device-registry.js';
-import { healthState, isDrifting } from './sensor-health.js';
+import { healthState, isDrifting, isStuck } from './sensor-health.js';
 import type { KeptSensor, SensorFields, SensorsRepository } from './sensors-repository.js';
 
 /** What sensors need to know of rooms. @throws ProblemError not-found for a room of another studio */
@@ -90,6 +90,20 @@ export class Sensors {
     const line = this.#line(actor, studioId, 'retired', sensorId, fieldsOf(sensor), undefined);
     await this.parts.repository.retire(sensorId, at, line);
     this.parts.changed(studioId, sensor.roomId);
+  }
+
+  /** Sensors of all studios that repeat one value, by id, with that value in °C. */
+  async stuck(): Promise<Map<string, number>> {
+    const { repository } = this.parts;
+    const sensors = await repository.inService();
+    const newest = await repository.newest(sensors.map(({ no }) => no));
+    const spans = await repository.recentSpans(newest);
+    return new Map(
+      sensors.flatMap(({ id, no }): [string, number][] => {
+        const value = newest.get(no);
+        return value && isStuck(spans.get(no) ?? null) ? [[id, value.celsius]] : [];
+      }),
+    );
   }
 
   quarantine(studioId: string, limit: number): Promise<z.infer<typeof quarantined>[]> {
