@@ -11,6 +11,9 @@ export interface StretchSums {
   readonly perEnergy: number;
 }
 
+/** Cells by which there is more room than needed: three days. */
+const RESERVE = 3 * CELLS_PER_DAY;
+
 /**
  * Running sums of one kinetic class over a sequence of temperatures that grows at its end and is now and then rebuilt from some
  * place on. The rate of a cell is computed once for all three.
@@ -21,10 +24,14 @@ export class ClassIntegrals {
   #perEnergy = new Float64Array(1);
   #known = 0;
 
-  /** @param celsius the temperature at an index; NaN makes every later sum NaN */
+  /**
+   * @param celsius the temperature at an index; NaN makes every later sum NaN
+   * @param length how many temperatures there are at present: how much room is worth reserving
+   */
   constructor(
     private readonly kinetic: KineticClass,
     private readonly celsius: (index: number) => number,
+    private readonly length: () => number,
   ) {}
 
   /** Sums of the terms in [from, to). */
@@ -59,8 +66,7 @@ export class ClassIntegrals {
   #grow(to: number): void {
     if (to <= this.#known) return;
     if (to >= this.#days.length) {
-      // Many classes in many rooms: a quarter in reserve, not as much again.
-      const capacity = Math.max(to + CELLS_PER_DAY, Math.ceil(this.#days.length * 1.25));
+      const capacity = Math.max(to, this.length()) + RESERVE;
       this.#days = grown(this.#days, capacity);
       this.#perKelvin = grown(this.#perKelvin, capacity);
       this.#perEnergy = grown(this.#perEnergy, capacity);

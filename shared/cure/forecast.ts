@@ -5,6 +5,8 @@ import { energySensitivity, type KineticClass, rate, temperatureSensitivity } fr
 export const HORIZON = 180 * CELLS_PER_DAY;
 /** Time constant with which a room returns to its usual day, h. */
 const RETURN_HOURS = 24;
+/** Forecast cells for which there is room at first: ten days. */
+const FIRST_ROOM = 10 * CELLS_PER_DAY;
 const SIGMA_ROOM = 1.5;
 const SIGMA_DRIFT = 1;
 
@@ -80,7 +82,7 @@ export class Forecast {
   #grow(n: number): void {
     if (n <= this.#known) return;
     if (n >= this.#rates.length) {
-      const capacity = Math.max(n + 1, Math.min(HORIZON + 1, 2 * this.#rates.length));
+      const capacity = Math.max(n + 1, FIRST_ROOM, Math.min(HORIZON + 1, 2 * this.#rates.length));
       this.#rates = enlarged(this.#rates, capacity);
       this.#perKelvin = enlarged(this.#perKelvin, capacity);
       this.#perEnergy = enlarged(this.#perEnergy, capacity);

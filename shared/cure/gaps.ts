@@ -47,14 +47,11 @@ export function learnUsualDay(observed: Observed, firstCell: number, before: num
     const celsius = observed(cell);
     if (!Number.isNaN(celsius)) byHour[utcHourOf(cell)]?.push(celsius);
   }
-  const deviations = byHour.flatMap((values) => {
-    if (values.length === 0) return [];
-    const middle = median(values);
-    return values.map((value) => value - middle);
-  });
+  const middles = byHour.map((values) => (values.length === 0 ? NaN : median(values)));
+  const deviations = byHour.flatMap((values, hour) => values.map((value) => value - (middles[hour] ?? NaN)));
   const spread = deviations.length === 0 ? 0 : NORMAL_MAD * medianAbsoluteDeviation(deviations);
   return {
-    hours: byHour.map((values) => (values.length < ENOUGH_CELLS ? null : median(values))),
+    hours: byHour.map((values, hour) => (values.length < ENOUGH_CELLS ? null : (middles[hour] ?? null))),
     sigma: Math.max(SMALLEST_SIGMA, spread),
   };
 }

@@ -152,7 +152,11 @@ export class RoomHistory {
     this.#fill();
     let sums = this.#classes.get(kinetic);
     if (!sums) {
-      sums = new ClassIntegrals(kinetic, (index) => this.#filled[index] ?? NaN);
+      sums = new ClassIntegrals(
+        kinetic,
+        (index) => this.#filled[index] ?? NaN,
+        () => this.#length,
+      );
       this.#classes.set(kinetic, sums);
     }
     return sums;
