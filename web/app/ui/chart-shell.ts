@@ -36,6 +36,7 @@ export type ChartView = 'chart' | 'table';
   styles: `
     :host {
       display: grid;
+      grid-template-columns: minmax(0, 1fr);
       gap: 12px;
       min-inline-size: 0;
     }

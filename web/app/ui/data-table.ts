@@ -16,6 +16,8 @@ import { ChangeDetectionStrategy, Component, input } from '@angular/core';
     }
     .sr-scroll {
       position: relative;
+      inline-size: 0;
+      min-inline-size: 100%;
     }
   `,
   changeDetection: ChangeDetectionStrategy.OnPush,

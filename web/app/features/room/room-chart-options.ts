@@ -18,6 +18,8 @@ export interface RoomChart {
 type Value = readonly [number, number | null];
 
 const CELL_MINUTES = 10;
+const STEPS = [1, 2, 5, 10, 20];
+const LABELLED_MARKS = 6;
 
 /**
  * Temperature and dew point above, humidity below, on one time axis of the studio's wall clock: the room's band, the
@@ -73,16 +75,13 @@ export function roomChartOptions(chart: RoomChart, colours: ChartColours): EChar
   return {
     aria: { enabled: false },
     grid: [
-      { left: 44, right: 14, top: 16, height: '56%' },
+      { left: 44, right: 14, top: 26, height: '56%' },
       { left: 44, right: 14, bottom: 28, height: '21%' },
     ],
     xAxis: [timeAxis(chart, 0, false, colours), timeAxis(chart, 1, true, colours)],
     yAxis: [
-      valueAxis(0, colours, {
-        min: floorOf(points, series, degrees),
-        max: ceilingOf(points, series, degrees),
-      }),
-      valueAxis(1, colours, { minInterval: 10, splitNumber: 2 }),
+      valueAxis(0, colours, degreesShown(points, series).map(degrees), 5),
+      valueAxis(1, colours, humidityShown(points), 2),
     ],
     tooltip: tooltip(chart, colours),
     axisPointer: { link: [{ xAxisIndex: 'all' }] },
@@ -182,13 +181,13 @@ function linesOf(
       formatter: `frosting from ${formats.temperature(celsius)} (${batches.length} ${batches.length === 1 ? 'batch' : 'batches'})`,
     },
   }));
-  const moves = series.marks
-    .filter((mark) => mark.kind !== 'alert')
-    .map((mark) => ({
-      xAxis: Date.parse(mark.from),
-      lineStyle: { color: colours.copper, type: 'dotted', width: 1.4 },
-      label: { show: !narrow, ...label, position: 'insideEndTop', formatter: shortMark(mark) },
-    }));
+  const moved = series.marks.filter((mark) => mark.kind !== 'alert');
+  const show = !narrow && moved.length <= LABELLED_MARKS;
+  const moves = moved.map((mark) => ({
+    xAxis: Date.parse(mark.from),
+    lineStyle: { color: colours.copper, type: 'dotted', width: 1.4 },
+    label: { show, ...label, position: 'end', rotate: 0, formatter: shortMark(mark) },
+  }));
   return [...limits, ...moves];
 }
 
@@ -225,30 +224,39 @@ function timeAxis(
   };
 }
 
-function valueAxis(index: number, colours: ChartColours, extra: object) {
+function valueAxis(index: number, colours: ChartColours, values: readonly number[], lines: number) {
   return {
     type: 'value',
     gridIndex: index,
-    scale: true,
-    axisLabel: { color: colours.muted, fontSize: 13, hideOverlap: true },
+    ...niceRange(values, lines),
+    axisLabel: { color: colours.muted, fontSize: 13 },
     splitLine: { lineStyle: { color: colours.hairline } },
-    ...extra,
   };
 }
 
-function floorOf(points: readonly SeriesPoint[], series: RoomSeries, degrees: (c: number) => number): number {
-  const lows = points.flatMap((point) => [point.tMin, point.dewPoint]).filter((value) => value !== null);
-  return Math.floor(degrees(Math.min(series.band.low, ...lows)) - 1);
+/** Round ends and a round step that hold all values. Worked value: ([17.2, 26.3], 5) → 16 to 28 by 2. */
+export function niceRange(
+  values: readonly number[],
+  lines: number,
+): { min: number; max: number; interval: number } {
+  const low = Math.min(...values);
+  const high = Math.max(...values);
+  const interval = STEPS.find((step) => (high - low) / step <= lines) ?? 50;
+  const min = Math.floor(low / interval) * interval;
+  return { min, max: Math.max(Math.ceil(high / interval) * interval, min + interval), interval };
 }
 
-function ceilingOf(
-  points: readonly SeriesPoint[],
-  series: RoomSeries,
-  degrees: (c: number) => number,
-): number {
-  const highs = points.map((point) => point.tMax).filter((value) => value !== null);
+function degreesShown(points: readonly SeriesPoint[], series: RoomSeries): number[] {
+  const measured = points.flatMap((point) => [point.tMin, point.tMax, point.t, point.dewPoint]);
   const limits = series.frostingLimits.map((limit) => limit.celsius);
-  return Math.ceil(degrees(Math.max(series.band.high, ...highs, ...limits)) + 1);
+  return [...measured.filter((value) => value !== null), ...limits, series.band.low, series.band.high];
+}
+
+function humidityShown(points: readonly SeriesPoint[]): number[] {
+  const measured = points
+    .flatMap((point) => [point.rhMin, point.rhMax, point.rh])
+    .filter((value) => value !== null);
+  return measured.length > 0 ? measured : [40, 60];
 }
 
 /** Text only: the canvas draws it, nothing is read as HTML. */

@@ -55,8 +55,11 @@ const STATE: Record<Sensor['health']['state'], { readonly words: string; readonl
     .health {
       display: inline-flex;
       gap: 7px;
-      align-items: center;
+      align-items: baseline;
       white-space: nowrap;
+    }
+    .health sr-status-mark {
+      align-self: center;
     }
     tbody th {
       color: var(--mat-sys-on-surface);
