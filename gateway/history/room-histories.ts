@@ -58,6 +58,7 @@ export class RoomHistories {
 
   /** Follows committed readings and changed sensors, and the clock once a second. */
   start(cells: Feed<CellsChanged>, layout: Feed<LayoutChanged>): void {
+    if (this.#kept.size === 0) this.#end = cellOf(this.parts.clock.now());
     const timer = setInterval(() => void this.tick().catch(this.parts.failed), TICK_MS);
     timer.unref();
     this.#stopping = [
