@@ -77,14 +77,16 @@ describe('the cure floor over HTTP, from committed readings to pages', () => {
     worker = new RollupWorker({ dataSource, committed, cells, log: pino({ level: 'silent' }) });
     await floor.start();
     const maker = await ground.actor('maker');
-    mountAll(app, floor.mounted, async (bearer) =>
-      bearer === null
-        ? null
-        : {
-            ...{ id: maker.personId, name: maker.name, email: 'm@example.org', sessionId: randomUUID() },
-            ...{ owner: false, memberships: [{ studioId: ground.studioId, role: 'maker' as const }] },
-          },
-    );
+    mountAll(app, floor.mounted, {
+      authenticate: async (bearer) =>
+        bearer === null
+          ? null
+          : {
+              ...{ id: maker.personId, name: maker.name, email: 'm@example.org', sessionId: randomUUID() },
+              ...{ owner: false, memberships: [{ studioId: ground.studioId, role: 'maker' as const }] },
+            },
+      studioExists: async () => true,
+    });
     app.use(
       (
         error: unknown,
