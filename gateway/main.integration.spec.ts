@@ -8,6 +8,7 @@ import { createConnection } from 'mysql2/promise';
 import { userInfo } from 'node:os';
 import { inject } from 'vitest';
 import { openTestDatabase, type TestDatabase } from './database/test-database.js';
+import type { Loose } from './test-gateway.js';
 
 describe('the gateway as a program', () => {
   let database: TestDatabase;
@@ -162,7 +163,7 @@ describe('the gateway as a program', () => {
     expect([await unknown.ended, unknown.out.text]).toEqual([2, expect.stringContaining('--mail')]);
   });
 
-  async function post(path: string, body: object): Promise<any> {
+  async function post(path: string, body: object): Promise<Loose> {
     const response = await fetch(`${pages()}${path}`, {
       method: 'POST',
       headers: { 'Content-Type': 'application/json' },

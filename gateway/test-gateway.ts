@@ -20,10 +20,13 @@ export interface TestPerson {
   readonly token: string;
 }
 
+/** What an answer holds; specs say what they expect of it. */
+export type Loose = ReturnType<typeof JSON.parse>;
+
 export interface Answer {
   readonly status: number;
   /** The parsed body; null for none. */
-  readonly body: any;
+  readonly body: Loose;
   readonly headers: Headers;
 }
 
