@@ -4,7 +4,7 @@ import type { Segment } from '#shared/cure/stays';
 
 /**
  * The swings one batch has gone through, carried on from cell to cell over its stays. Counted anew only when a cell it has
- * already seen was changed.
+ * already seen was changed, or a room's history was built anew.
  */
 export class BatchCycles {
   #counter = new RainflowCounter();
@@ -19,7 +19,7 @@ export class BatchCycles {
     const seen = segments
       .map((segment) =>
         segment.kind === 'room'
-          ? `${segment.roomId}:${segment.from}:${segment.room.rewrites}`
+          ? `${segment.room.serial}:${segment.from}:${segment.room.rewrites}`
           : `-${segment.from}`,
       )
       .join('|');

@@ -17,6 +17,9 @@ export interface GapInStretch {
  * only what comes after it; sums are brought up to date when somebody asks.
  */
 export class RoomHistory {
+  static #count = 0;
+  /** Tells histories apart: one that was built anew is another, even of the same room. */
+  readonly serial = ++RoomHistory.#count;
   #celsius: Float64Array;
   #filled: Float64Array;
   #length = 0;

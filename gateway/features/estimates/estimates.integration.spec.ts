@@ -132,6 +132,23 @@ describe('estimates on a real database', () => {
     expect(fresh).toEqual(running);
   });
 
+  it('forgets the swings of a sensor that is no longer trusted', async () => {
+    const room = await floor.addRoom();
+    const [calm, wild] = [await floor.addSensor(room), await floor.addSensor(room)];
+    const [begin, now] = [cellOf(NOON - 10 * DAY), cellOf(floor.clock.at)];
+    await floor.record(calm, begin, now, () => 22);
+    await floor.record(wild, begin, now, (cell) => 22 + 6 * Math.sin(cell / 9));
+    const { id: designId } = await floor.addDesign('soy-container');
+    const id = await floor.addBatch(designId, NOON - 4 * DAY, [{ room, from: NOON - 4 * DAY, to: null }]);
+    await floor.estimates.batchesTouched(floor.studioId, [id]);
+    const index = () => floor.estimates.cards([id], false)[0]?.frosting?.index ?? Number.NaN;
+    expect(index()).toBeGreaterThan(30);
+    await floor.sql('UPDATE sensor SET trusted = 0 WHERE no = ?', [wild.no]);
+    floor.layoutChanged.announce({ studioId: floor.studioId, roomId: room.id });
+    await floor.settled();
+    expect(index()).toBe(0);
+  });
+
   it('answers as of an earlier instant with the stays and tests of then', async () => {
     const [first, second] = [await floor.addRoom(), await floor.addRoom()];
     const [a, b] = [await floor.addSensor(first), await floor.addSensor(second)];

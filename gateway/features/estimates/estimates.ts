@@ -303,8 +303,8 @@ export class Estimates {
   async #reload(): Promise<void> {
     const batches = await this.parts.facts.curing();
     await this.#needHistoriesOf(batches);
-    this.#floor.replace(batches);
-    this.#cards.clear();
+    for (const id of this.#floor.replace(batches)) this.#cards.delete(id);
+    for (const id of this.#cards.keys()) if (!this.#floor.get(id)) this.#cards.delete(id);
     for (const id of this.#cycles.keys()) if (!this.#floor.get(id)) this.#cycles.delete(id);
   }
 }

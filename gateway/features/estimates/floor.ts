@@ -1,5 +1,5 @@
 import { cellOf } from '#shared/cure/grid';
-import type { BatchFacts } from './batch-facts-repository.js';
+import type { BatchFacts, DesignFacts } from './batch-facts-repository.js';
 
 /** The curing batches of all studios and where they stood and stand. */
 export class Floor {
@@ -32,10 +32,19 @@ export class Floor {
     this.#batches.delete(batchId);
   }
 
-  replace(batches: readonly BatchFacts[]): void {
+  /** Takes these batches instead of all others; returns the ids of those that were not there just like that before. */
+  replace(batches: readonly BatchFacts[]): string[] {
+    const before = new Map(this.#batches);
+    const sameDesign = memoised((a: DesignFacts, b: DesignFacts) => JSON.stringify(a) === JSON.stringify(b));
     this.#batches.clear();
     this.#inRoom.clear();
     for (const facts of batches) this.put(facts);
+    return batches
+      .filter((facts) => {
+        const old = before.get(facts.id);
+        return !old || !sameDesign(old.design, facts.design) || !sameBatch(old, facts);
+      })
+      .map(({ id }) => id);
   }
 
   /** Ids of a studio's curing batches, oldest pour first. */
@@ -71,4 +80,25 @@ export class Floor {
     }
     return [...found];
   }
+}
+
+function sameBatch(a: BatchFacts, b: BatchFacts): boolean {
+  const { design: _a, ...left } = a;
+  const { design: _b, ...right } = b;
+  return JSON.stringify(left) === JSON.stringify(right);
+}
+
+/** Many batches share a design: each pair is compared once. */
+function memoised<T extends object>(compare: (a: T, b: T) => boolean): (a: T, b: T) => boolean {
+  const known = new Map<T, Map<T, boolean>>();
+  return (a, b) => {
+    const ofA = known.get(a) ?? new Map<T, boolean>();
+    if (ofA.size === 0) known.set(a, ofA);
+    let same = ofA.get(b);
+    if (same === undefined) {
+      same = compare(a, b);
+      ofA.set(b, same);
+    }
+    return same;
+  };
 }

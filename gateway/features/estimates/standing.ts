@@ -120,5 +120,7 @@ function slipAt(facts: BatchFacts, card: BatchCard, celsius: number): number | n
   const next = nextGate(facts, card);
   if (next === null || card.cureAgeDays === null) return null;
   const left = Math.max(0, next.days - card.cureAgeDays);
-  return left * (1 / rate(celsius, hardeningClass(facts.design.kinetics)) - 1);
+  const pace = rate(celsius, hardeningClass(facts.design.kinetics));
+  // Wax that softens again does not cure at all: no number of days says how late it is.
+  return pace === 0 ? null : left * (1 / pace - 1);
 }
