@@ -19,10 +19,10 @@ export class BatchCycles {
     const seen = segments
       .map((segment) =>
         segment.kind === 'room'
-          ? `${segment.room.serial}:${segment.from}:${segment.room.rewrites}`
-          : `-${segment.from}`,
+          ? `${segment.room.serial}:${segment.from}:${segment.room.rewrites};`
+          : `-${segment.from};`,
       )
-      .join('|');
+      .join('');
     // The stretch that was the last one may have grown or ended, but not before what was counted.
     const resumed = segments[this.#segments - 1];
     const carriesOn = resumed !== undefined && resumed.to >= this.#next && seen.startsWith(this.#seen);
