@@ -20,6 +20,7 @@ type Value = readonly [number, number | null];
 const CELL_MINUTES = 10;
 const STEPS = [1, 2, 5, 10, 20];
 const LABELLED_MARKS = 6;
+const DENSE = 700;
 
 /**
  * Temperature and dew point above, humidity below, on one time axis of the studio's wall clock: the room's band, the
@@ -45,7 +46,7 @@ export function roomChartOptions(chart: RoomChart, colours: ChartColours): EChar
     showSymbol: false,
     connectNulls: false,
     color: colour,
-    lineStyle: { width: 1.8, color: colour },
+    lineStyle: { width: points.length > DENSE ? 1.1 : 1.8, color: colour },
     ...extra,
   });
   const temperature = line(

@@ -49,6 +49,12 @@ import { Icon } from '../../ui/icon';
     mat-form-field {
       inline-size: 100%;
     }
+    button {
+      margin-inline-end: 4px;
+    }
+    sr-icon {
+      font-size: 18px;
+    }
   `,
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
