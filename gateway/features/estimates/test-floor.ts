@@ -1,4 +1,5 @@
 import { randomUUID } from 'node:crypto';
+import type { BatchCard } from '#shared/contract/batches';
 import { WAX_FAMILY_DEFAULTS, type WaxFamilyName } from '#shared/cure/wax-families';
 import { CELL_MS, cellStart } from '#shared/cure/grid';
 import type { CureKinetics } from '#shared/cure/kinetics';
@@ -60,22 +61,39 @@ export class TestFloor {
   /** Begins again with nothing but the database, as after a restart of the gateway. */
   async restart(historiesChanged = new Feed<HistoriesChanged>(fail)): Promise<void> {
     await this.#stop();
+    ({ histories: this.histories, estimates: this.estimates } = await this.#begin(
+      historiesChanged,
+      this.batchesChanged,
+    ));
+  }
+
+  /** What a gateway started just now says of the studio's batches, while the running one goes on. */
+  async freshCards(studioId = this.studioId): Promise<BatchCard[]> {
+    const { histories, estimates } = await this.#begin(new Feed(fail), new Feed(fail));
+    const cards = estimates.cardsOfStudio(studioId, false);
+    await histories.stop();
+    await estimates.stop();
+    return cards;
+  }
+
+  async #begin(historiesChanged: Feed<HistoriesChanged>, batchesChanged: Feed<BatchesChanged>) {
     const { dataSource } = this.database;
-    this.histories = new RoomHistories({
+    const histories = new RoomHistories({
       cells: new RoomCellsRepository(dataSource),
       clock: this.clock,
       changed: historiesChanged,
       failed: fail,
     });
-    this.estimates = new Estimates({
+    const estimates = new Estimates({
       facts: new BatchFactsRepository(dataSource),
-      histories: this.histories,
+      histories,
       clock: this.clock,
-      changed: this.batchesChanged,
+      changed: batchesChanged,
       failed: fail,
     });
-    this.histories.start(this.cellsChanged, this.layoutChanged);
-    await this.estimates.start(historiesChanged, this.layoutChanged);
+    histories.start(this.cellsChanged, this.layoutChanged);
+    await estimates.start(historiesChanged, this.layoutChanged);
+    return { histories, estimates };
   }
 
   async #stop(): Promise<void> {
