@@ -1,10 +1,13 @@
 import { CELLS_PER_DAY, CELLS_PER_HOUR, utcHourOf } from '#shared/cure/grid';
-import { median, medianAbsoluteDeviation } from '#shared/statistics/median';
+import { medianAbsoluteDeviationInPlace, medianInPlace } from '#shared/statistics/median';
 
 /** Gaps up to this long with readings at both ends are filled by a straight line, cells. */
 const LONGEST_LINE = 3 * CELLS_PER_HOUR;
 /** How far back the usual course of a day is learned from, cells. */
 export const LOOK_BACK = 14 * CELLS_PER_DAY;
+/** Cells of one hour of the day within the look-back. */
+const CELLS_OF_HOUR = LOOK_BACK / 24;
+const NO_VALUES = new Float64Array(0);
 /** Cells an hour of the day needs before its median counts. */
 const ENOUGH_CELLS = 6;
 /** A gap this long or longer carries its full uncertainty, cells. */
@@ -42,18 +45,29 @@ export type Observed = (cell: number) => number;
 
 /** Learns the usual day from the observed cells in [before − 14 d, before). */
 export function learnUsualDay(observed: Observed, firstCell: number, before: number): UsualDay {
-  const byHour: number[][] = Array.from({ length: 24 }, () => []);
-  for (let cell = Math.max(firstCell, before - LOOK_BACK); cell < before; cell++) {
+  const from = Math.max(firstCell, before - LOOK_BACK);
+  const byHour = Array.from({ length: 24 }, () => new Float64Array(CELLS_OF_HOUR));
+  const counts = new Uint16Array(24);
+  for (let cell = from; cell < before; cell++) {
     const celsius = observed(cell);
-    if (!Number.isNaN(celsius)) byHour[utcHourOf(cell)]?.push(celsius);
+    if (Number.isNaN(celsius)) continue;
+    const hour = utcHourOf(cell);
+    const count = counts[hour] ?? 0;
+    (byHour[hour] ?? NO_VALUES)[count] = celsius;
+    counts[hour] = count + 1;
   }
-  const middles = byHour.map((values) => (values.length === 0 ? NaN : median(values)));
-  const deviations = byHour.flatMap((values, hour) => values.map((value) => value - (middles[hour] ?? NaN)));
-  const spread = deviations.length === 0 ? 0 : NORMAL_MAD * medianAbsoluteDeviation(deviations);
-  return {
-    hours: byHour.map((values, hour) => (values.length < ENOUGH_CELLS ? null : (middles[hour] ?? null))),
-    sigma: Math.max(SMALLEST_SIGMA, spread),
-  };
+  const deviations = new Float64Array(counts.reduce((sum, count) => sum + count, 0));
+  let at = 0;
+  const hours = byHour.map((values, hour) => {
+    const count = counts[hour] ?? 0;
+    if (count === 0) return null;
+    const ofHour = values.subarray(0, count);
+    const middle = medianInPlace(ofHour);
+    for (const value of ofHour) deviations[at++] = value - middle;
+    return count < ENOUGH_CELLS ? null : middle;
+  });
+  const spread = deviations.length === 0 ? 0 : NORMAL_MAD * medianAbsoluteDeviationInPlace(deviations);
+  return { hours, sigma: Math.max(SMALLEST_SIGMA, spread) };
 }
 
 /**
