@@ -81,7 +81,7 @@ describe('golden runs', () => {
   });
 
   it.each(cure.golden.ages)('ages after $history', (row) => {
-    const found = estimate(row.history as Days, SOY);
+    const found = estimate(row.history, SOY);
     expect(Math.abs(found.hardeningDays - row.hardeningDays)).toBeLessThanOrEqual(5e-5);
     if (row.scentDays !== undefined) {
       expect(Math.abs(found.scentDays - row.scentDays)).toBeLessThanOrEqual(5e-5);
@@ -93,7 +93,7 @@ describe('golden runs', () => {
   it.each(cure.constant.rows)('at a constant %d °C ready after %d d', (celsius, days) => {
     // Two days in, so that the forecast knows nothing but this temperature.
     const room = new RoomHistory(ORIGIN);
-    for (let cell = 0; cell < 2 * CELLS_PER_DAY; cell++) room.set(ORIGIN + cell, celsius!);
+    for (let cell = 0; cell < 2 * CELLS_PER_DAY; cell++) room.set(ORIGIN + cell, celsius);
     const estimated = estimateBatch(
       {
         pouredAt: ORIGIN * CELL_MS,
@@ -108,7 +108,7 @@ describe('golden runs', () => {
       (ORIGIN + 2 * CELLS_PER_DAY) * CELL_MS,
     );
     if (!estimated.known) throw new Error('an estimate was expected');
-    expect(Math.abs(dayOf(estimated.estimate.wickTest.t50)! - days!)).toBeLessThanOrEqual(
+    expect(Math.abs(dayOf(estimated.estimate.wickTest.t50)! - days)).toBeLessThanOrEqual(
       cure.constant.tolerance,
     );
   });

@@ -39,12 +39,12 @@ describe('equivalent age', () => {
 
   it.each(maturity.rates.rows)('rates at %d °C', (celsius, q5000, e50, e60) => {
     const { tolerance } = maturity.rates;
-    const wax = (energy: number) => rate(celsius!, { energy, capC: 27, softC: 38 });
-    expect(off(equivalentAge([{ celsius: celsius!, duration: 1 }], 5000, 20), q5000!)).toBeLessThanOrEqual(
+    const wax = (energy: number) => rate(celsius, { energy, capC: 27, softC: 38 });
+    expect(off(equivalentAge([{ celsius: celsius, duration: 1 }], 5000, 20), q5000)).toBeLessThanOrEqual(
       tolerance,
     );
-    expect(off(wax(50), e50!)).toBeLessThanOrEqual(tolerance);
-    expect(off(wax(60), e60!)).toBeLessThanOrEqual(tolerance);
+    expect(off(wax(50), e50)).toBeLessThanOrEqual(tolerance);
+    expect(off(wax(60), e60)).toBeLessThanOrEqual(tolerance);
   });
 });
 
@@ -136,7 +136,7 @@ describe('frosting index', () => {
 
 describe('forecast', () => {
   it.each(cure.integralSd.rows)('sd of the temperature integral after %d h', (hours, sd) => {
-    expect(off(Math.sqrt(integralVariance(hours!, 0)), sd!)).toBeLessThanOrEqual(cure.integralSd.tolerance);
+    expect(off(Math.sqrt(integralVariance(hours, 0)), sd)).toBeLessThanOrEqual(cure.integralSd.tolerance);
   });
 
   it('adds the drift in squares and starts at nothing', () => {

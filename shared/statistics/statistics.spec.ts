@@ -59,9 +59,9 @@ describe('Welch', () => {
 
 describe('intervals', () => {
   it.each(reference.wilson.rows)('Wilson for %d of %d', (successes, trials, low, high) => {
-    const interval = wilson(successes!, trials!);
-    expect(off(interval.low, low!)).toBeLessThanOrEqual(reference.wilson.tolerance);
-    expect(off(interval.high, high!)).toBeLessThanOrEqual(reference.wilson.tolerance);
+    const interval = wilson(successes, trials);
+    expect(off(interval.low, low)).toBeLessThanOrEqual(reference.wilson.tolerance);
+    expect(off(interval.high, high)).toBeLessThanOrEqual(reference.wilson.tolerance);
   });
 
   it('Student: two-sided 5 % point for 9 degrees of freedom is 2.262157 (printed tables)', () => {
