@@ -1,5 +1,7 @@
-import { randomUUID } from 'node:crypto';
-import { resolve } from 'node:path';
+import { randomBytes, randomUUID } from 'node:crypto';
+import { readFile } from 'node:fs/promises';
+import type { ServerResponse } from 'node:http';
+import { join, resolve } from 'node:path';
 import express, { type Express, type NextFunction, type Request, type Response } from 'express';
 import helmet from 'helmet';
 import type { Logger } from 'pino';
@@ -28,6 +30,10 @@ export function createApp(parts: AppParts): Express {
   app.disable('x-powered-by');
   app.set('trust proxy', 'loopback');
   app.use(logRequests(parts.log));
+  app.use((_request, response, next) => {
+    response.locals['nonce'] = randomBytes(18).toString('base64');
+    next();
+  });
   app.use(protectPages(parts));
   app.get('/api/health', async (_request, response) => {
     const health = await parts.health();
@@ -101,8 +107,10 @@ function protectPages({ https, allowedOrigins }: AppParts) {
         imgSrc: ["'self'", 'data:', 'blob:'],
         objectSrc: ["'none'"],
         scriptSrc: ["'self'"],
-        // Angular writes component styles as style elements.
-        styleSrc: ["'self'", "'unsafe-inline'"],
+        // Angular writes component styles as style elements and gives them the nonce of the page.
+        styleSrc: ["'self'", (_request, response) => `'nonce-${nonceOf(response)}'`],
+        // Attributes only: style values of single elements, which can load nothing and run nothing.
+        styleSrcAttr: ["'unsafe-inline'"],
       },
     },
     strictTransportSecurity: https ? { maxAge: 31_536_000, includeSubDomains: false } : false,
@@ -145,13 +153,19 @@ function serveWeb(app: Express, webDir: string): void {
       },
     }),
   );
-  app.get('/{*rest}', (request, response, next) => {
-    if (request.path.includes('.')) return next(new ProblemError('not-found', 'There is no such file.'));
-    response.sendFile('index.html', { root, headers: { 'Cache-Control': 'no-cache' } }, (error) => {
-      if (error && !response.headersSent)
-        next(new ProblemError('not-found', 'The web pages have not been built. Run npm run build.'));
-    });
+  app.get('/{*rest}', async (request, response) => {
+    if (request.path.includes('.')) throw new ProblemError('not-found', 'There is no such file.');
+    const page = await readFile(join(root, 'index.html'), 'utf8').catch(() => null);
+    if (page === null)
+      throw new ProblemError('not-found', 'The web pages have not been built. Run npm run build.');
+    // Angular looks for the nonce on an element inside the body.
+    const withNonce = page.replace('<sr-app', `<sr-app ngCspNonce="${nonceOf(response)}"`);
+    response.set('Cache-Control', 'no-store').type('html').send(withNonce);
   });
+}
+
+function nonceOf(response: ServerResponse): string {
+  return (response as Response).locals['nonce'] as string;
 }
 
 function answerProblems(log: Logger) {

@@ -47,7 +47,10 @@ export class TestGateway {
     const database = await openTestDatabase();
     const folder = mkdtempSync(join(tmpdir(), 'stillroom-gateway-'));
     mkdirSync(join(folder, 'web'));
-    writeFileSync(join(folder, 'web/index.html'), '<!doctype html><title>Stillroom</title>');
+    writeFileSync(
+      join(folder, 'web/index.html'),
+      '<!doctype html><title>Stillroom</title><body><sr-app></sr-app></body>',
+    );
     writeFileSync(join(folder, 'outside.txt'), 'nobody may read this');
     const { host, port, name, user, password } = database.access;
     const given = readSettings({

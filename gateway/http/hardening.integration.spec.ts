@@ -50,10 +50,25 @@ describe('the web server against the outside', () => {
     expect(policy).toContain(`object-src 'none'`);
     expect(policy).toContain(`frame-ancestors 'none'`);
     expect(policy).toContain(`connect-src 'self' ws://`);
-    expect(policy).not.toMatch(/script-src[^;]*unsafe/);
+    expect(policy).not.toMatch(/(script-src|style-src)\b(?!-attr)[^;]*unsafe/);
     expect(headers.get('x-content-type-options')).toBe('nosniff');
     expect(headers.get('referrer-policy')).toBe('no-referrer');
     expect(headers.get('x-powered-by')).toBeNull();
+  });
+
+  it('gives each page a nonce of its own for the styles the pages write', async () => {
+    const nonces = await Promise.all(
+      ['/', '/racks'].map(async (path) => {
+        const { headers, body } = await gateway.call(null, 'GET', path);
+        const [, nonce] = /style-src 'self' 'nonce-([\w+/=]{24,})'/.exec(
+          headers.get('content-security-policy')!,
+        )!;
+        expect(body).toContain(`<sr-app ngCspNonce="${nonce}">`);
+        expect(headers.get('cache-control')).toBe('no-store');
+        return nonce;
+      }),
+    );
+    expect(new Set(nonces).size).toBe(2);
   });
 
   it('answers other origins nothing they could read', async () => {
