@@ -67,7 +67,7 @@ export function assembleDoors(needs: DoorsNeeds): Doors {
     authenticate: async (bearer) => (bearer === null ? null : (await signIn.authenticate(bearer)).person),
     async stop() {
       await passwords.settled();
-      await hashes.close();
+      await hashes.stop();
     },
   };
 }

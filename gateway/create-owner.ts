@@ -58,7 +58,7 @@ async function hashFromStdin(wanted: Wanted, company: string): Promise<string> {
   try {
     return await hashes.hash(password);
   } finally {
-    await hashes.close();
+    await hashes.stop();
   }
 }
 

@@ -4,7 +4,7 @@ import { PasswordHashes } from './password-hashes.js';
 describe('PasswordHashes', () => {
   const hashes = new PasswordHashes();
   const quick = new PasswordHashes(4);
-  afterAll(() => Promise.all([hashes.close(), quick.close()]));
+  afterAll(() => Promise.all([hashes.stop(), quick.stop()]));
 
   it('costs 12 rounds and keeps the thread of readings free', async () => {
     let turns = 0;
@@ -49,10 +49,10 @@ describe('PasswordHashes', () => {
     expect(refused[0]?.reason).toMatchObject({ code: 'busy' });
   });
 
-  it('rejects what waits when it is closed', async () => {
+  it('rejects what waits when it is stopped', async () => {
     const closing = new PasswordHashes(10);
     const waiting = Promise.allSettled([1, 2, 3, 4].map((i) => closing.hash(`password ${i}`)));
-    await closing.close();
+    await closing.stop();
     expect((await waiting).every(({ status }) => status === 'rejected')).toBe(true);
   });
 });

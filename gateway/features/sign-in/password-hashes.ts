@@ -50,7 +50,7 @@ export class PasswordHashes {
   }
 
   /** Ends the threads; hashes under way are rejected. */
-  async close(): Promise<void> {
+  async stop(): Promise<void> {
     for (const job of this.#waiting.splice(0)) job.reject(new ProblemError('busy', STOPPING));
     await Promise.all([...this.#threads].map((thread) => thread.terminate()));
   }

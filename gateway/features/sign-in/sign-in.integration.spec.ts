@@ -39,7 +39,7 @@ describe('signing in', () => {
     );
   });
   afterAll(async () => {
-    await hashes.close();
+    await hashes.stop();
     await database.close();
   });
 
