@@ -79,7 +79,8 @@ export function assemble(settings: Settings, log: Logger): Gateway {
   const sensors = assembleSensors(base, floor, intake);
   const watch = assembleWatch({ ...base, systemClock }, alerts, floor, sensors);
   const mounted = [...doors.mounted, ...floor.mounted, ...mountSensors(sensors), ...watch.mounted];
-  const http = createServer();
+  // A request that takes longer to arrive is somebody holding the line.
+  const http = createServer({ requestTimeout: 30_000 });
   http.on('request', assembleApp(base, mounted, doors, http, new Health(base, intake)));
   const live = assembleLive(base, doors, floor, alerts, http);
   const parts: Part[] = [

@@ -34,8 +34,22 @@ describe('PasswordHashes', () => {
     expect(await quick.verify('cafe\u0301 am morgen', await quick.hash('caf\u00e9 am morgen'))).toBe(true);
   });
 
-  it('never lets anybody in without a hash', async () => {
-    expect(await hashes.verify('anything', null)).toBe(false);
+  it('never lets anybody in without a hash, and takes as long to say so', async () => {
+    const hash = await hashes.hash('copper kettle by noon');
+    const times = { known: Infinity, unknown: Infinity };
+    // The shortest of three tells the work from what else the machine does.
+    for (let round = 0; round < 3; round++) {
+      for (const [who, against] of [
+        ['known', hash],
+        ['unknown', null],
+      ] as const) {
+        const startedAt = performance.now();
+        expect(await hashes.verify('a wrong password', against)).toBe(false);
+        times[who] = Math.min(times[who], performance.now() - startedAt);
+      }
+    }
+    expect(times.unknown / times.known).toBeGreaterThan(0.6);
+    expect(times.unknown / times.known).toBeLessThan(1.6);
   });
 
   it('works through many at once and refuses too many', async () => {

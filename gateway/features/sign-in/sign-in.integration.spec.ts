@@ -181,6 +181,20 @@ describe('signing in', () => {
     expect(await outcome(signIn.refresh(refreshToken, desk))).toBe('session-ended');
   });
 
+  it('signs nobody out when the clock of the machine jumps by an hour and back', async () => {
+    const people = await Promise.all([person(), person(), person()]);
+    const sessions = await Promise.all(people.map(({ email }) => signIn.signIn(email, PASSWORD, desk)));
+    now += 3_600_000;
+    expect(await outcome(signIn.authenticate(sessions[0]!.accessToken))).toBe('sign-in-needed');
+    const later = await Promise.all(sessions.map(({ refreshToken }) => signIn.refresh(refreshToken, desk)));
+    now -= 2 * 3_600_000;
+    for (const { accessToken, refreshToken } of later) {
+      expect(await outcome(signIn.authenticate(accessToken))).toBe('fine');
+      expect(await outcome(signIn.refresh(refreshToken, desk))).toBe('fine');
+    }
+    expect(stolen).toBe(0);
+  });
+
   it('gives two tabs that race the same successor', async () => {
     const { email } = await person();
     const { refreshToken } = await signIn.signIn(email, PASSWORD, desk);
