@@ -63,7 +63,6 @@ export class DemoFloor {
     const pairs = await Promise.all(
       [...passwords].map(async (password) => [password, await hashes.hash(password)] as const),
     );
-    await hashes.close();
     return new Map(pairs);
   }
 
