@@ -58,7 +58,7 @@ try {
     `\nStillroom runs after ${((performance.now() - startedAt) / 1000).toFixed(0)} s:  ${stack.url}`,
   );
   if (stack.demo) {
-    const { DEMO_SIGN_INS } = await import('../dist/server/shared/contract/demo-scenario.js');
+    const { DEMO_SIGN_INS } = await import('../dist/server/shared/contract/demo-sign-ins.js');
     console.log(`Demo desk (mailbox, speed, faults):  ${stack.deskUrl}\n\nDemo sign-ins:`);
     for (const { email, password, what } of DEMO_SIGN_INS) console.log(`  ${email}  ${password}   ${what}`);
   } else {

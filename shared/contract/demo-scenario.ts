@@ -4,18 +4,6 @@ import { waxFamily } from '#shared/contract/materials';
 import { STUDIO_ROLES } from '#shared/contract/roles';
 import { roomLimits } from '#shared/contract/rooms';
 
-/** People of the demo who can sign in; their passwords are no secrets: the demo listens on this machine only. */
-export const DEMO_SIGN_INS = [
-  { email: 'marit@larkrise.example', password: 'wax-and-patience', what: 'owner of all studios' },
-  { email: 'ines@larkrise.example', password: 'wax-and-patience', what: 'lead of Quay Street' },
-  {
-    email: 'tomas@larkrise.example',
-    password: 'wax-and-patience',
-    what: 'maker in Quay Street and High Barn',
-  },
-  { email: 'dispatch@larkrise.example', password: 'wax-and-patience', what: 'viewer of Quay Street' },
-] as const;
-
 /** First line of a demo scenario: everything but the readings. Things refer to each other by keys of the scenario. */
 export const demoScenario = z.object({
   /** The instant the story is told at. */
