@@ -1,4 +1,4 @@
-import { type Signal, signal } from '@angular/core';
+import { computed, type Signal, signal } from '@angular/core';
 import type { BatchCard } from '#shared/contract/batches';
 import type { Ribbon, RoomNow, RoomWall } from '#shared/contract/overview';
 import { mergedRibbon } from './ribbon-merge';
@@ -12,6 +12,9 @@ export class RoomLive {
   readonly studioId: string;
   readonly info: Signal<RoomInfo>;
   readonly now: Signal<RoomNow>;
+  /** What `now` says of them, for what need not change with every reading. */
+  readonly condition = computed(() => this.now().condition);
+  readonly stale = computed(() => this.now().stale);
   readonly ribbon: Signal<Ribbon>;
   /** Curing batches standing in the room. */
   readonly batches: Signal<readonly BatchCard[]>;

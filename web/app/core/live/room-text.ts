@@ -32,8 +32,6 @@ export interface RoomText {
   readonly ready: Signal<StateWords | null>;
   /** What a block says; new when a date's wording may have changed. */
   readonly blockWords: Signal<(batch: BatchCard) => { what: string; when: string; label: string }>;
-  /** Whether the room needs a look: not fine, or not heard. */
-  readonly troubled: Signal<boolean>;
 }
 
 /** Writes what a live room shows, in the studio's zone and the person's unit. */
@@ -57,15 +55,14 @@ export class RoomTexts {
         { equal: sameTexts },
       ),
       ribbon: computed(() => ribbonInWords(room.ribbon().celsius, formats())),
-      ready: computed(() => readyLine(room.info().racks, room.batches(), formats(), this.clock.minute()), {
+      ready: computed(() => readyLine(room.info().racks, room.batches(), formats(), this.clock.cell()), {
         equal: (a, b) => a === b || (a !== null && b !== null && sameTexts(a, b)),
       }),
       blockWords: computed(() => {
-        const now = this.clock.minute();
-        const widened = room.now().stale;
+        const now = this.clock.cell();
+        const widened = room.stale();
         return (batch) => blockWords(batch, formats(), now, widened);
       }),
-      troubled: computed(() => room.now().condition !== 'fine'),
     };
   }
 

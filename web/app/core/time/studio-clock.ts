@@ -1,4 +1,5 @@
 import { computed, DestroyRef, inject, Injectable, signal } from '@angular/core';
+import { CELL_MS } from '#shared/cure/grid';
 import { MINUTE_MS } from './zoned-time';
 
 const TICK_MS = 1000;
@@ -16,6 +17,9 @@ export class StudioClock {
   readonly now = this.writableNow.asReadonly();
   /** Epoch ms of the present whole minute: for text that need not change every second. */
   readonly minute = computed(() => Math.floor(this.writableNow() / MINUTE_MS) * MINUTE_MS);
+
+  /** Epoch ms of the present ten-minute cell: for dates and walls, which move no faster than the cure. */
+  readonly cell = computed(() => Math.floor(this.writableNow() / CELL_MS) * CELL_MS);
 
   constructor() {
     const timer = setInterval(() => this.tick(), TICK_MS);

@@ -89,10 +89,10 @@ export class RoomPage {
     const text = this.text();
     if (!place || !text) return [];
     const { info, batches } = place.room;
-    return wallLayout(info().racks, batches(), text.blockWords(), this.clock.minute());
+    return wallLayout(info().racks, batches(), text.blockWords(), this.clock.cell());
   });
   protected readonly status = computed<Status>(() => {
-    const condition = this.place()?.room.now().condition ?? 'fine';
+    const condition = this.place()?.room.condition() ?? 'fine';
     if (condition === 'fine') return 'good';
     return condition === 'never-heard' ? 'silent' : condition;
   });

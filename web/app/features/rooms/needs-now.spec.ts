@@ -1,12 +1,16 @@
 import type { Alert } from '#shared/contract/alerts';
-import { aBatch, aGate, aRack, aRoomNow, REACHED, ROOM_ID, STUDIO_ID } from '#shared/words/test-floor';
+import { aBatch, aGate, aRack, REACHED, ROOM_ID, STUDIO_ID } from '#shared/words/test-floor';
 import { studioFormats } from '../../core/time/studio-formats';
-import { needsNow, type NeedRoom, type NeedStudio } from './needs-now';
+import { type NeedRoom, type NeedStudio, troubles, workDue } from './needs-now';
 
+const needsNow = (studios: NeedStudio[], now: number) => [
+  ...troubles(studios, now),
+  ...workDue(studios, now),
+];
 const NOW = Date.parse('2026-05-04T14:42:00.000Z');
 
 function aRoom(over: Partial<NeedRoom> = {}): NeedRoom {
-  return { id: ROOM_ID, name: 'Cellar', now: aRoomNow(), racks: [aRack(1)], batches: [], ...over };
+  return { id: ROOM_ID, name: 'Cellar', silence: null, racks: [aRack(1)], batches: [], ...over };
 }
 
 function aStudio(over: Partial<NeedStudio> = {}): NeedStudio {
@@ -84,7 +88,7 @@ describe('what needs somebody now', () => {
 
   it('names a silent room until its alert does', () => {
     const silent = aRoom({
-      now: aRoomNow({ condition: 'silent', stale: true, celsius: 18.9, at: '2026-05-04T14:20:00.000Z' }),
+      silence: { celsius: 18.9, at: '2026-05-04T14:20:00.000Z' },
       batches: [aBatch(1)],
     });
     const [line] = needsNow([aStudio({ rooms: [silent] })], NOW);

@@ -23,7 +23,8 @@ export interface NeedLine {
 export interface NeedRoom {
   readonly id: string;
   readonly name: string;
-  readonly now: RoomNow;
+  /** The last known reading of a room gone silent; null while it is heard. */
+  readonly silence: Pick<RoomNow, 'at' | 'celsius'> | null;
   readonly racks: readonly Rack[];
   readonly batches: readonly BatchCard[];
 }
@@ -54,10 +55,10 @@ export const ALERT_STATUS: Record<AlertKind, Status> = {
 const WEIGHT = { critical: 0, warning: 1, notice: 2 } as const;
 
 /**
- * What needs somebody now, the most pressing first: alerts, silent rooms, racks ready today, tests due.
+ * What is wrong now, the most pressing first: alerts, then rooms gone silent.
  * @param now epoch ms
  */
-export function needsNow(studios: readonly NeedStudio[], now: number): NeedLine[] {
+export function troubles(studios: readonly NeedStudio[], now: number): NeedLine[] {
   return [
     ...studios
       .flatMap((studio) => studio.alerts.map((alert) => ({ studio, alert })))
@@ -69,6 +70,15 @@ export function needsNow(studios: readonly NeedStudio[], now: number): NeedLine[
       )
       .map(({ studio, alert }) => ofAlert(studio, alert, now)),
     ...studios.flatMap((studio) => silentRooms(studio, now)),
+  ];
+}
+
+/**
+ * Work that is due today: racks that are or will be ready, then tests.
+ * @param now epoch ms
+ */
+export function workDue(studios: readonly NeedStudio[], now: number): NeedLine[] {
+  return [
     ...studios.flatMap((studio) => racksReadyToday(studio, now)),
     ...studios.flatMap((studio) => (studio.tests ? testsDue(studio) : [])),
   ];
@@ -93,15 +103,14 @@ function ofAlert(studio: NeedStudio, alert: Alert, now: number): NeedLine {
 function silentRooms(studio: NeedStudio, now: number): NeedLine[] {
   return studio.rooms
     .filter(
-      ({ id, now: room }) =>
-        room.condition === 'silent' &&
-        !studio.alerts.some((alert) => alert.roomId === id && isSilence(alert)),
+      ({ id, silence }) =>
+        silence !== null && !studio.alerts.some((alert) => alert.roomId === id && isSilence(alert)),
     )
     .map((room) => ({
       id: `silent ${room.id}`,
       status: 'silent',
       lead: `${studio.name}, ${room.name} is silent`,
-      rest: silence(room, studio.formats, now),
+      rest: lastHeard(room, studio.formats, now),
       who: 'nobody yet',
       link: ['/rooms', room.id],
     }));
@@ -111,9 +120,9 @@ function isSilence(alert: Alert): boolean {
   return alert.facts.kind === 'silent' || alert.facts.kind === 'intake-silent';
 }
 
-function silence({ now: room, batches }: NeedRoom, formats: StudioFormats, now: number): string {
-  if (room.at === null || room.celsius === null) return '';
-  const ago = `last ${formats.temperature(room.celsius)}, ${formats.duration(now - Date.parse(room.at))} ago`;
+function lastHeard({ silence, batches }: NeedRoom, formats: StudioFormats, now: number): string {
+  if (!silence || silence.at === null || silence.celsius === null) return '';
+  const ago = `last ${formats.temperature(silence.celsius)}, ${formats.duration(now - Date.parse(silence.at))} ago`;
   return batches.length > 0 ? `${ago}; dates there widen by the hour` : ago;
 }
 
@@ -132,7 +141,7 @@ function racksReadyToday(studio: NeedStudio, now: number): NeedLine[] {
           status: 'good' as const,
           lead: `${studio.name}, ${room.name}: ${one.rack.name} ${done ? 'is ready today' : `will be ready ${day}`}`,
           rest: `${contents(one)}, ${done ? 'ready since' : 'about'} ${formats.time(at)}`,
-          who: studio.name,
+          who: `anybody in ${studio.name}`,
           link: ['/rooms', room.id],
         },
       ];
@@ -173,7 +182,7 @@ function dueTests(studio: NeedStudio, due: readonly BatchCard[], what: string, w
       status: 'due',
       lead: `${studio.name}: ${what.toLowerCase()} for ${list(designs)}`,
       rest: `${list(due.map((batch) => batch.code))}; ${why}`,
-      who: studio.name,
+      who: `anybody in ${studio.name}`,
       link: due.length === 1 ? ['/batches', first.id] : ['/batches'],
     },
   ];

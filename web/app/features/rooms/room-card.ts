@@ -17,7 +17,7 @@ import { wallLayout } from '../../ui/wall-layout';
   imports: [RackWall, RoomFigures, RouterLink, StateSentence, TemperatureRibbon],
   templateUrl: './room-card.html',
   styleUrl: './room-card.scss',
-  host: { '[class]': 'now().condition' },
+  host: { '[class]': 'room().condition()' },
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class RoomCard {
@@ -28,17 +28,16 @@ export class RoomCard {
   private readonly clock = inject(StudioClock);
 
   protected readonly text = computed(() => this.texts.of(this.studio(), this.room()));
-  protected readonly now = computed(() => this.room().now());
   protected readonly info = computed(() => this.room().info());
   protected readonly figures = computed(() => this.text().figures());
   protected readonly state = computed(() => this.text().state());
   protected readonly status = computed<Status>(() => {
-    const { condition } = this.now();
+    const condition = this.room().condition();
     if (condition === 'fine') return 'good';
     return condition === 'never-heard' ? 'silent' : condition;
   });
   protected readonly racks = computed(() =>
-    wallLayout(this.info().racks, this.room().batches(), this.text().blockWords(), this.clock.minute()),
+    wallLayout(this.info().racks, this.room().batches(), this.text().blockWords(), this.clock.cell()),
   );
   protected readonly edge = computed(() => {
     const { limits } = this.info();

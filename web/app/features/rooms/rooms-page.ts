@@ -13,7 +13,7 @@ import { PageHeader } from '../../ui/page-header';
 import { WallLegend } from '../../ui/wall-legend';
 import { codes } from '#shared/words/room-state';
 import { NeedsList } from './needs-list';
-import { needsNow, type NeedStudio } from './needs-now';
+import { type NeedStudio, troubles, workDue } from './needs-now';
 import { RoomCard } from './room-card';
 
 /** Home: what needs somebody now, then every studio with its rooms. */
@@ -43,12 +43,10 @@ export class RoomsPage {
       };
     }),
   );
-  protected readonly needs = computed(() =>
-    needsNow(
-      this.live.studios().map((studio) => this.needsOf(studio)),
-      this.clock.minute(),
-    ),
-  );
+  private readonly needStudios = computed(() => this.live.studios().map((studio) => this.needsOf(studio)));
+  private readonly troubles = computed(() => troubles(this.needStudios(), this.clock.minute()));
+  private readonly workDue = computed(() => workDue(this.needStudios(), this.clock.cell()));
+  protected readonly needs = computed(() => [...this.troubles(), ...this.workDue()]);
   private readonly latest = computed(() =>
     Math.max(
       ...this.live
@@ -80,7 +78,7 @@ export class RoomsPage {
       rooms: studio.rooms().map((room) => ({
         id: room.id,
         name: room.info().name,
-        now: room.now(),
+        silence: room.condition() === 'silent' ? room.now() : null,
         racks: room.info().racks,
         batches: room.batches(),
       })),
