@@ -60,6 +60,19 @@ class RoomPast {
   alerts(): { writes: Write[]; alerts: number } {
     const writes: Write[] = [];
     let alerts = 0;
+    const stays = this.#stays();
+    const pictures = Array.from(this.run.celsius, (_, index) => {
+      const at = cellStart(this.run.fromCell + index + 1);
+      const there = stays.filter(({ from, to }) => from <= at && at < to);
+      return {
+        at,
+        picture: this.#picture(
+          index,
+          at,
+          there.map(({ batch }) => batch),
+        ),
+      };
+    });
     for (const kind of KINDS) {
       const rule = rulesOf(null).find((one) => one.kind === kind);
       if (!rule) continue;
@@ -77,9 +90,7 @@ class RoomPast {
       let kept: KeptRule = { state: NORMAL, alertId: null };
       let alert: AlertRecord | null = null;
       let steps: Write[] = [];
-      for (let index = 0; index < this.run.celsius.length; index++) {
-        const at = cellStart(this.run.fromCell + index + 1);
-        const picture = this.#picture(index, at);
+      for (const { at, picture } of pictures) {
         const found = lookAtRoom(kind, rule, picture, at);
         const came = transition(subject, { ...found, lastHeardAt: at }, kept, alert, around, at);
         kept = came.kept;
@@ -135,11 +146,10 @@ class RoomPast {
     };
   }
 
-  #picture(index: number, at: number): RoomPicture {
+  #picture(index: number, at: number, standing: readonly StandingBatch[]): RoomPicture {
     const { celsius, humidity } = this.run;
     const t = celsius[index] ?? NaN;
     const rh = humidity[index] ?? NaN;
-    const standing = this.#standing(at);
     const limits = [this.room.limits.heatLimit, ...standing.map(({ frostingFrom }) => frostingFrom)];
     const known = limits.filter((limit) => limit !== null);
     const now: RoomNow = {
@@ -164,31 +174,30 @@ class RoomPast {
     return high < low ? null : high - low;
   }
 
-  #standing(at: number): StandingBatch[] {
-    return this.scenario.batches.flatMap((batch): StandingBatch[] => {
-      const stay = batch.stays.find(
-        ({ rack, from, to }) =>
-          rack.startsWith(`${this.room.key}/`) &&
-          Date.parse(from) <= at &&
-          (to === null || Date.parse(to) > at),
-      );
+  /** Who stood in the room and when, epoch ms. */
+  #stays(): { from: number; to: number; batch: StandingBatch }[] {
+    return this.scenario.batches.flatMap((batch) => {
       const design = this.scenario.designs.find(({ key }) => key === batch.design);
       const family = this.scenario.waxes.find(({ key }) => key === design?.wax)?.family;
-      if (!stay || !family) return [];
+      if (!family) return [];
       const { frosting, frostingFrom } = WAX_FAMILY_DEFAULTS[family].kinetics;
-      return [
-        {
-          ...{
-            id: this.floor.id('batch', batch.code),
-            code: batch.code,
-            waxFamily: family,
-            frosting,
-            frostingFrom,
+      return batch.stays
+        .filter(({ rack }) => rack.startsWith(`${this.room.key}/`))
+        .map((stay) => ({
+          from: Date.parse(stay.from),
+          to: stay.to === null ? Infinity : Date.parse(stay.to),
+          batch: {
+            ...{
+              id: this.floor.id('batch', batch.code),
+              code: batch.code,
+              waxFamily: family,
+              frosting,
+              frostingFrom,
+            },
+            shelf: `Rack ${stay.rack.split('/')[1]}, shelf ${stay.shelf}`,
+            ...{ slipDays: null, slipIfItStaysDays: null },
           },
-          shelf: `Rack ${stay.rack.split('/')[1]}, shelf ${stay.shelf}`,
-          ...{ slipDays: null, slipIfItStaysDays: null },
-        },
-      ];
+        }));
     });
   }
 }
