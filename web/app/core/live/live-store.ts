@@ -159,7 +159,7 @@ export class LiveStore {
       },
       goodbye: ({ reason }) => {
         if (reason === 'signed-out') this.session.end('signed-out');
-        else if (reason === 'role-changed') void this.session.refresh();
+        else if (reason === 'role-changed') void this.session.refresh('role-changed');
       },
     };
     for (const [name, handler] of Object.entries(handlers)) {

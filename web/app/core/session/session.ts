@@ -82,10 +82,11 @@ export class Session {
 
   /**
    * Exchanges the refresh cookie for a new token. Tabs take turns, because a refresh token used twice ends the session.
+   * @param otherwise why the session ended, should the gateway refuse
    * @returns whether somebody is signed in afterwards
    */
-  refresh(): Promise<boolean> {
-    this.refreshing ??= inTurn(() => this.exchange()).finally(() => {
+  refresh(otherwise: SessionEnd = 'ended'): Promise<boolean> {
+    this.refreshing ??= inTurn(() => this.exchange(otherwise)).finally(() => {
       this.refreshing = null;
     });
     return this.refreshing;
@@ -113,7 +114,7 @@ export class Session {
     return me !== null && mayAnywhere(me, permission);
   }
 
-  private async exchange(): Promise<boolean> {
+  private async exchange(otherwise: SessionEnd): Promise<boolean> {
     try {
       this.take(
         await this.api.call<typeof sessionRoutes.refresh>('POST', '/api/session/refresh', {
@@ -125,7 +126,7 @@ export class Session {
       const refused =
         error instanceof ApiError && error.status >= 400 && error.status < 500 && error.status !== 429;
       if (refused) {
-        this.forget('ended');
+        this.forget(otherwise);
         return false;
       }
       // The gateway is away for a moment: stay signed in and try again.
