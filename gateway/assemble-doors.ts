@@ -32,8 +32,6 @@ export interface DoorsNeeds {
   readonly clock: Clock;
   /** The time sessions and links end by. */
   readonly systemClock: Clock;
-  /** Told after a studio got another time zone. */
-  readonly timeZoneChanged: (studioId: string) => void;
   readonly log: Logger;
 }
 
@@ -54,7 +52,6 @@ export function assembleDoors(needs: DoorsNeeds): Doors {
     repository: new StudiosRepository(dataSource),
     clock,
     changed: (studioId) => feeds.layout.announce({ studioId, roomId: null }),
-    timeZoneChanged: needs.timeZoneChanged,
   });
   return {
     mounted: [

@@ -73,7 +73,7 @@ export function assemble(settings: Settings, log: Logger): Gateway {
     log,
   });
   const intake = assembleIntake(base);
-  const doors = assembleDoors({ ...base, systemClock, timeZoneChanged: () => rollups.forgetPlaces() });
+  const doors = assembleDoors({ ...base, systemClock });
   const alerts = assembleAlerts({ ...base, systemClock });
   const floor = assembleFloorOf(base, doors, alerts);
   const sensors = assembleSensors(base, floor, intake);

@@ -1,5 +1,5 @@
 import type { Logger } from 'pino';
-import type { DataSource } from 'typeorm';
+import type { DataSource, EntityManager } from 'typeorm';
 import { cellOf } from '#shared/cure/grid';
 import type { CellsChanged, CommittedReading } from '../announcements.js';
 import type { Feed } from '../feed.js';
@@ -33,7 +33,6 @@ const LOOK_EVERY_MS = 2000;
  * reading that comes meanwhile sets its mark again. Marks of a gateway that died are found by looking now and then.
  */
 export class RollupWorker {
-  #places = new Map<number, SensorPlace>();
   #timer: NodeJS.Timeout | null = null;
   #unlisten: (() => void) | null = null;
   #running: Promise<void> | null = null;
@@ -60,29 +59,24 @@ export class RollupWorker {
 
   /** Works off a share of the marks and announces the rooms' cells. @returns how many marks there were */
   async pass(): Promise<number> {
-    const marks = await this.parts.dataSource.transaction('READ COMMITTED', async (manager) => {
+    const { marks, places } = await this.parts.dataSource.transaction('READ COMMITTED', async (manager) => {
       const rows = await manager.query<{ sensor_no: number; bucket: Date }[]>(
         `SELECT sensor_no, bucket FROM dirty_mark ORDER BY sensor_no, bucket LIMIT ${MARKS_A_PASS}`,
       );
-      if (rows.length === 0) return [];
+      if (rows.length === 0) return { marks: [], places: new Map<number, SensorPlace>() };
       const found = rows.map((row): Mark => ({ sensorNo: row.sensor_no, bucket: row.bucket.getTime() }));
       await manager.query('DELETE FROM dirty_mark WHERE (sensor_no, bucket) IN (?)', [
         rows.map((row) => [row.sensor_no, row.bucket]),
       ]);
-      await this.#learnPlaces(found);
+      const known = await placesOf(manager, found);
       await rebuildRollups(
         manager,
-        stretchesOf(found, (sensorNo) => this.#places.get(sensorNo)?.timeZone ?? 'UTC'),
+        stretchesOf(found, (sensorNo) => known.get(sensorNo)?.timeZone ?? 'UTC'),
       );
-      return found;
+      return { marks: found, places: known };
     });
-    this.#announce(marks);
+    this.#announce(marks, places);
     return marks.length;
-  }
-
-  /** Forgets where sensors are; after a studio changed its time zone. */
-  forgetPlaces(): void {
-    this.#places.clear();
   }
 
   #soon(ms: number): void {
@@ -105,24 +99,10 @@ export class RollupWorker {
     }
   }
 
-  async #learnPlaces(marks: readonly Mark[]): Promise<void> {
-    const unknown = [...new Set(marks.map((mark) => mark.sensorNo))].filter((no) => !this.#places.has(no));
-    if (unknown.length === 0) return;
-    const rows = await this.parts.dataSource.query<
-      { no: number; room_id: string; studio_id: string; time_zone: string }[]
-    >(
-      'SELECT s.no, s.room_id, s.studio_id, t.time_zone FROM sensor s JOIN studio t ON t.id = s.studio_id WHERE s.no IN (?)',
-      [unknown],
-    );
-    for (const row of rows) {
-      this.#places.set(row.no, { roomId: row.room_id, studioId: row.studio_id, timeZone: row.time_zone });
-    }
-  }
-
-  #announce(marks: readonly Mark[]): void {
+  #announce(marks: readonly Mark[], places: ReadonlyMap<number, SensorPlace>): void {
     const changed = new Map<string, { roomId: string; studioId: string; fromCell: number; toCell: number }>();
     for (const { sensorNo, bucket } of marks) {
-      const place = this.#places.get(sensorNo);
+      const place = places.get(sensorNo);
       if (place === undefined) continue;
       const cell = cellOf(bucket);
       const known = changed.get(place.roomId);
@@ -140,4 +120,15 @@ export class RollupWorker {
     }
     for (const change of changed.values()) this.parts.cells.announce(change);
   }
+}
+
+/** Where the marked sensors are, read in the same transaction: a time zone that changes meanwhile waits its turn. */
+async function placesOf(manager: EntityManager, marks: readonly Mark[]): Promise<Map<number, SensorPlace>> {
+  const rows = await manager.query<{ no: number; room_id: string; studio_id: string; time_zone: string }[]>(
+    'SELECT s.no, s.room_id, s.studio_id, t.time_zone FROM sensor s JOIN studio t ON t.id = s.studio_id WHERE s.no IN (?) LOCK IN SHARE MODE',
+    [[...new Set(marks.map((mark) => mark.sensorNo))]],
+  );
+  return new Map(
+    rows.map((row) => [row.no, { roomId: row.room_id, studioId: row.studio_id, timeZone: row.time_zone }]),
+  );
 }

@@ -3,7 +3,8 @@ import type { Refusal } from './batches-repository.js';
 
 /** Clocks of people's devices may be this much ahead; what is given as later than now then counts as now. */
 const AHEAD_MS = 5 * 60_000;
-const OLDEST_MS = 3 * 366 * 86_400_000;
+/** Old recordings may be replayed for what a batch would have become; before this a year is a slip of the pen. */
+const OLDEST = Date.UTC(2000, 0, 1);
 
 export function fieldProblem(path: string, message: string): ProblemError {
   return new ProblemError('bad-input', message, [{ path, message }]);
@@ -11,12 +12,12 @@ export function fieldProblem(path: string, message: string): ProblemError {
 
 /**
  * An instant somebody gave, as epoch ms, not later than now.
- * @throws ProblemError bad-input for a time in the future or more than three years ago
+ * @throws ProblemError bad-input for a time in the future or before the year 2000
  */
 export function checkedInstant(given: string, now: number, path: string): number {
   const at = Date.parse(given);
   if (at > now + AHEAD_MS) throw fieldProblem(path, 'This time lies in the future.');
-  if (at < now - OLDEST_MS) throw fieldProblem(path, 'This is more than three years ago. Check the year.');
+  if (at < OLDEST) throw fieldProblem(path, 'This lies before the year 2000. Check the year.');
   return Math.min(at, now);
 }
 

@@ -11,8 +11,6 @@ export interface StudiosParts {
   readonly clock: Clock;
   /** Told after a studio was created or changed. */
   readonly changed: (studioId: string) => void;
-  /** Told after a studio got another time zone: its local days begin at other moments from then on. */
-  readonly timeZoneChanged: (studioId: string) => void;
 }
 
 /** Studios and how each is reached. */
@@ -60,7 +58,6 @@ export class Studios {
     if (!(await this.parts.repository.update(studioId, version, rest, line)))
       throw changedMeanwhile('studio');
     this.parts.changed(studioId);
-    if (before.timeZone !== rest.timeZone) this.parts.timeZoneChanged(studioId);
     return { ...(await this.get(studioId)), role: actor.role ?? 'owner' };
   }
 
