@@ -4,6 +4,7 @@ import { connectAsync, type MqttClient } from 'mqtt';
 import { readingTopic } from '#shared/contract/telemetry';
 import { enrolDevices, type ReadyDevice } from './replay/enrol.js';
 import { HELP, OptionsError, readOptions, type ReplayOptions } from './replay/options.js';
+import { Progress } from './replay/progress.js';
 import { type RecordedReading, type Recording, RecordingError, readRecording } from './replay/recording.js';
 
 /** Command: replays a recording over MQTT. See HELP. */
@@ -144,30 +145,4 @@ function publish(client: MqttClient, topic: string, readings: readonly RecordedR
 async function until(instant: number): Promise<void> {
   const wait = instant - performance.now();
   if (wait > 0) await new Promise((resolve) => setTimeout(resolve, wait));
-}
-
-/** How far it is, on one line of a terminal or now and then in a log. */
-class Progress {
-  #done = 0;
-  #shown = 0;
-
-  constructor(private readonly total: number) {}
-
-  add(count: number): void {
-    this.#done += count;
-    const now = performance.now();
-    if (now - this.#shown < (process.stdout.isTTY ? 200 : 5000)) return;
-    this.#shown = now;
-    process.stdout.write(
-      `${process.stdout.isTTY ? '\r' : ''}${this.#words()}${process.stdout.isTTY ? '' : '\n'}`,
-    );
-  }
-
-  end(): void {
-    process.stdout.write(`${process.stdout.isTTY ? '\r' : ''}${this.#words()}\n`);
-  }
-
-  #words(): string {
-    return `${this.#done} of ${this.total} readings acknowledged (${Math.floor((100 * this.#done) / this.total)} %)`;
-  }
 }
