@@ -51,6 +51,7 @@ try {
   process.on('SIGTERM', () => void stop('SIGTERM'));
   process.on('SIGHUP', () => void stop('SIGHUP'));
   process.on('exit', () => stack.kill());
+  stack.checkNotRunning();
   if (flags.has('--reset-demo')) await stack.resetDemo();
   await ensureBuilt(root);
   await stack.start();

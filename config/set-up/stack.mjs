@@ -24,6 +24,7 @@ export class Stack {
   #gateway = null;
   #simulator = null;
   #stopping = false;
+  #noted = false;
 
   /** @param {{ root: string, dataDir: string, demo: boolean, tell: (sentence: string) => void }} options */
   constructor(options) {
@@ -89,7 +90,7 @@ export class Stack {
     await this.#simulator?.stop();
     await this.#gateway?.stop(15_000);
     await this.#database.stop();
-    rmSync(this.#runFile, { force: true });
+    if (this.#noted) rmSync(this.#runFile, { force: true });
   }
 
   /** For the last moment of this process only: ends everything at once. */
@@ -245,23 +246,33 @@ export class Stack {
 
   /** Notes who runs, so that a later start can find parts whose starter was killed. */
   #noteRunning() {
+    this.#noted = true;
     writeFileSync(this.#runFile, JSON.stringify({ starter: process.pid, url: this.url, ...this.pids }));
   }
 
-  /** @throws SetUpError when a living starter already runs this data folder; ends parts whose starter is gone */
-  #endLeftovers() {
-    if (!existsSync(this.#runFile)) return;
-    let noted;
-    try {
-      noted = JSON.parse(readFileSync(this.#runFile, 'utf8'));
-    } catch {
-      noted = {};
-    }
+  /** @throws SetUpError when a living starter already runs this data folder */
+  checkNotRunning() {
+    const noted = this.#running();
     if (noted.starter !== process.pid && commandOf(noted.starter).includes('config/')) {
       throw new SetUpError(
         `Stillroom already runs with this data folder (process ${noted.starter}): ${noted.url}\nStop it with Ctrl-C in its window first.`,
       );
     }
+  }
+
+  #running() {
+    if (!existsSync(this.#runFile)) return {};
+    try {
+      return JSON.parse(readFileSync(this.#runFile, 'utf8'));
+    } catch {
+      return {};
+    }
+  }
+
+  /** Ends parts whose starter was killed. @throws SetUpError when the starter lives */
+  #endLeftovers() {
+    this.checkNotRunning();
+    const noted = this.#running();
     for (const [part, mark] of [
       ['simulator', 'dist/server/'],
       ['gateway', 'dist/server/'],
