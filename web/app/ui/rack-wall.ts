@@ -49,6 +49,11 @@ export class RackWall {
     return visited !== null && ids.includes(visited) ? visited : ids[0];
   });
 
+  /** Its share of the shelf, but wide enough to read its code where there is room. */
+  protected width(share: number): string {
+    return `max(${(share * 100).toFixed(1)}%, 50px)`;
+  }
+
   protected arrived(event: FocusEvent): void {
     this.visited.set(
       (event.target as HTMLElement).closest('[data-block]')?.getAttribute('data-block') ?? null,

@@ -111,6 +111,9 @@ import type { BlockView } from './wall-layout';
       }
     }
     @container (max-width: 62px) {
+      .risk::after {
+        border-width: 5px;
+      }
       .weekday {
         display: none;
       }

@@ -65,7 +65,7 @@ describe('what needs somebody now', () => {
 
   it('tells an alert with its figures and whose it is', () => {
     const [line] = needsNow([aStudio({ alerts: [anAlert('a')] })], NOW);
-    expect(line?.lead).toBe('Quay Street, Loft: too warm for 1 soy batch since 14:20');
+    expect(line?.lead).toBe('Quay Street, Loft: too warm for 1 soy batch since 14:20:');
     expect(line?.rest).toContain('limit 25.0');
     expect(line?.who).toBe('Ines Aldous, not yet acknowledged');
     expect(line?.link).toEqual(['/alerts', 'a']);

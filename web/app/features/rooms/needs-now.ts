@@ -86,14 +86,15 @@ export function workDue(studios: readonly NeedStudio[], now: number): NeedLine[]
 
 function ofAlert(studio: NeedStudio, alert: Alert, now: number): NeedLine {
   const { headline, figures } = alertWords(alert.facts, studio.formats, now);
+  const rest = alert.state === 'returned' ? 'over, but nobody acknowledged it.' : figures;
   const matter =
     alert.facts.sensorName === null ? headline.charAt(0).toLowerCase() + headline.slice(1) : headline;
   const holder = alert.holder?.name ?? 'nobody yet';
   return {
     id: alert.id,
     status: ALERT_STATUS[alert.facts.kind],
-    lead: `${alertPlace(alert.facts)}: ${matter}`,
-    rest: alert.state === 'returned' ? 'Over, but nobody acknowledged it.' : figures,
+    lead: `${alertPlace(alert.facts)}: ${matter}${rest === '' ? '' : ':'}`,
+    rest,
     who: alert.acknowledged === null && alert.holder !== null ? `${holder}, not yet acknowledged` : holder,
     link: ['/alerts', alert.id],
   };

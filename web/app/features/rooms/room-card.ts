@@ -17,12 +17,14 @@ import { wallLayout } from '../../ui/wall-layout';
   imports: [RackWall, RoomFigures, RouterLink, StateSentence, TemperatureRibbon],
   templateUrl: './room-card.html',
   styleUrl: './room-card.scss',
-  host: { '[class]': 'room().condition()' },
+  host: { '[class]': "room().condition() + (many() ? ' many' : '')" },
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class RoomCard {
   readonly studio = input.required<StudioLive>();
   readonly room = input.required<RoomLive>();
+  /** One of so many that those out of view are left undrawn. */
+  readonly many = input(false);
 
   private readonly texts = inject(RoomTexts);
   private readonly clock = inject(StudioClock);

@@ -16,6 +16,8 @@ import { NeedsList } from './needs-list';
 import { type NeedStudio, troubles, workDue } from './needs-now';
 import { RoomCard } from './room-card';
 
+const MANY = 24;
+
 /** Home: what needs somebody now, then every studio with its rooms. */
 @Component({
   selector: 'sr-rooms-page',
@@ -42,6 +44,9 @@ export class RoomsPage {
         mayWrite: this.session.may('rooms.write', live.id),
       };
     }),
+  );
+  protected readonly many = computed(
+    () => this.live.studios().reduce((sum, studio) => sum + studio.rooms().length, 0) > MANY,
   );
   private readonly needStudios = computed(() => this.live.studios().map((studio) => this.needsOf(studio)));
   private readonly troubles = computed(() => troubles(this.needStudios(), this.clock.minute()));
