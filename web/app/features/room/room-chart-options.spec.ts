@@ -1,6 +1,7 @@
 import type { RoomSeries, SeriesPoint } from '#shared/contract/rooms';
 import { studioFormats } from '../../core/time/studio-formats';
-import { niceRange, pointWords, withGaps } from './room-chart-options';
+import { niceRange } from './room-chart-axes';
+import { pointWords, withGaps } from './room-chart-options';
 
 const point = (at: string, over: Partial<SeriesPoint> = {}): SeriesPoint => ({
   at,

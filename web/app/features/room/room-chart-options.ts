@@ -1,25 +1,21 @@
 import type { EChartsCoreOption } from 'echarts/core';
-import type { RoomMark, RoomSeries, SeriesPoint } from '#shared/contract/rooms';
+import type { RoomSeries, SeriesPoint } from '#shared/contract/rooms';
 import { toFahrenheit } from '#shared/units/temperature';
 import type { StudioFormats } from '../../core/time/studio-formats';
-import { timeTicks } from '../../core/time/time-ticks';
 import type { ChartColours } from '../../ui/chart-palette';
-
-export interface RoomChart {
-  readonly series: RoomSeries;
-  /** Ends of the period, epoch ms. */
-  readonly from: number;
-  readonly to: number;
-  readonly formats: StudioFormats;
-  /** Drawn on a phone: fewer ticks, no mark labels. */
-  readonly narrow: boolean;
-}
+import {
+  degreesShown,
+  humidityShown,
+  niceRange,
+  type RoomChart,
+  timeAxis,
+  valueAxis,
+} from './room-chart-axes';
+import { alertsOf, bandOf, linesOf, rowOfMoves } from './room-chart-marks';
 
 type Value = readonly [number, number | null];
 
 const CELL_MINUTES = 10;
-const STEPS = [1, 2, 5, 10, 20];
-const LABELLED_MARKS = 6;
 const DENSE = 700;
 
 /**
@@ -49,6 +45,7 @@ export function roomChartOptions(chart: RoomChart, colours: ChartColours): EChar
     lineStyle: { width: points.length > DENSE ? 1.1 : 1.8, color: colour },
     ...extra,
   });
+  const degreesDrawn = degreesShown(points, series).map(degrees);
   const temperature = line(
     `Temperature ${formats.unitSign}`,
     0,
@@ -80,10 +77,7 @@ export function roomChartOptions(chart: RoomChart, colours: ChartColours): EChar
       { left: 44, right: 14, bottom: 28, height: '21%' },
     ],
     xAxis: [timeAxis(chart, 0, false, colours), timeAxis(chart, 1, true, colours)],
-    yAxis: [
-      valueAxis(0, colours, degreesShown(points, series).map(degrees), 5),
-      valueAxis(1, colours, humidityShown(points), 2),
-    ],
+    yAxis: [valueAxis(0, colours, degreesDrawn, 5), valueAxis(1, colours, humidityShown(points), 3)],
     tooltip: tooltip(chart, colours),
     axisPointer: { link: [{ xAxisIndex: 'all' }] },
     series: [
@@ -108,6 +102,7 @@ export function roomChartOptions(chart: RoomChart, colours: ChartColours): EChar
       temperature,
       dewPoint,
       humidity,
+      ...rowOfMoves(chart, niceRange(degreesDrawn, 5).max, colours),
     ],
   };
 }
@@ -150,116 +145,6 @@ function rangeOf(name: string, axis: number, colour: string, low: Value[], high:
   ];
 }
 
-function bandOf(series: RoomSeries, degrees: (celsius: number) => number, colours: ChartColours) {
-  return [
-    { yAxis: degrees(series.band.low), itemStyle: { color: colours.good, opacity: 0.13 } },
-    { yAxis: degrees(series.band.high) },
-  ];
-}
-
-function alertsOf({ series, to }: RoomChart, colours: ChartColours) {
-  return series.marks
-    .filter((mark) => mark.kind === 'alert')
-    .map((mark) => [
-      { xAxis: Date.parse(mark.from), itemStyle: { color: colours.heat, opacity: 0.14 } },
-      { xAxis: mark.to === null ? to : Date.parse(mark.to) },
-    ]);
-}
-
-function linesOf(
-  { series, formats, narrow }: RoomChart,
-  degrees: (c: number) => number,
-  colours: ChartColours,
-) {
-  const label = { color: colours.ink, backgroundColor: colours.paper, padding: [1, 3], fontSize: 12 };
-  const limits = series.frostingLimits.map(({ celsius, batches }) => ({
-    yAxis: degrees(celsius),
-    lineStyle: { color: colours.heat, type: 'dashed', width: 1.4 },
-    label: {
-      ...label,
-      color: colours.heat,
-      position: 'insideStartTop',
-      formatter: `frosting from ${formats.temperature(celsius)} (${batches.length} ${batches.length === 1 ? 'batch' : 'batches'})`,
-    },
-  }));
-  const moved = series.marks.filter((mark) => mark.kind !== 'alert');
-  const show = !narrow && moved.length <= LABELLED_MARKS;
-  const moves = moved.map((mark) => ({
-    xAxis: Date.parse(mark.from),
-    lineStyle: { color: colours.copper, type: 'dotted', width: 1.4 },
-    label: { show, ...label, position: 'end', rotate: 0, formatter: shortMark(mark) },
-  }));
-  return [...limits, ...moves];
-}
-
-function shortMark(mark: RoomMark): string {
-  return mark.text.length > 22 ? `${mark.text.slice(0, 20)}…` : mark.text;
-}
-
-function timeAxis(
-  { from, to, formats, narrow }: RoomChart,
-  index: number,
-  labelled: boolean,
-  colours: ChartColours,
-) {
-  const ticks = timeTicks(from, to, formats.timeZone, narrow ? 4 : 9);
-  const labels = new Map(ticks.map((tick) => [tick.at, tick.label]));
-  const customValues = ticks.map((tick) => tick.at);
-  return {
-    type: 'value',
-    gridIndex: index,
-    min: from,
-    max: to,
-    axisLine: { lineStyle: { color: colours.hairline } },
-    axisTick: { customValues, lineStyle: { color: colours.hairline } },
-    axisLabel: {
-      show: labelled,
-      customValues,
-      color: colours.muted,
-      fontSize: 13,
-      hideOverlap: true,
-      formatter: (value: number) => labels.get(value) ?? '',
-    },
-    splitLine: { show: false },
-    axisPointer: { label: { show: false }, lineStyle: { color: colours.muted } },
-  };
-}
-
-function valueAxis(index: number, colours: ChartColours, values: readonly number[], lines: number) {
-  return {
-    type: 'value',
-    gridIndex: index,
-    ...niceRange(values, lines),
-    axisLabel: { color: colours.muted, fontSize: 13 },
-    splitLine: { lineStyle: { color: colours.hairline } },
-  };
-}
-
-/** Round ends and a round step that hold all values. Worked value: ([17.2, 26.3], 5) → 16 to 28 by 2. */
-export function niceRange(
-  values: readonly number[],
-  lines: number,
-): { min: number; max: number; interval: number } {
-  const low = Math.min(...values);
-  const high = Math.max(...values);
-  const interval = STEPS.find((step) => (high - low) / step <= lines) ?? 50;
-  const min = Math.floor(low / interval) * interval;
-  return { min, max: Math.max(Math.ceil(high / interval) * interval, min + interval), interval };
-}
-
-function degreesShown(points: readonly SeriesPoint[], series: RoomSeries): number[] {
-  const measured = points.flatMap((point) => [point.tMin, point.tMax, point.t, point.dewPoint]);
-  const limits = series.frostingLimits.map((limit) => limit.celsius);
-  return [...measured.filter((value) => value !== null), ...limits, series.band.low, series.band.high];
-}
-
-function humidityShown(points: readonly SeriesPoint[]): number[] {
-  const measured = points
-    .flatMap((point) => [point.rhMin, point.rhMax, point.rh])
-    .filter((value) => value !== null);
-  return measured.length > 0 ? measured : [40, 60];
-}
-
 /** Text only: the canvas draws it, nothing is read as HTML. */
 function tooltip({ series, formats }: RoomChart, colours: ChartColours) {
   const byTime = new Map(series.points.map((point) => [Date.parse(point.at), point]));
@@ -271,9 +156,8 @@ function tooltip({ series, formats }: RoomChart, colours: ChartColours) {
     borderColor: colours.hairline,
     textStyle: { color: colours.ink, fontSize: 14 },
     formatter: (hits: readonly { readonly value: Value }[]) => {
-      const at = hits[0]?.value[0];
-      const point = at === undefined ? undefined : byTime.get(at);
-      return at === undefined || !point ? '' : pointWords(point, series.stepMinutes, formats).join('\n');
+      const point = hits.map((hit) => byTime.get(hit.value[0])).find((known) => known !== undefined);
+      return point ? pointWords(point, series.stepMinutes, formats).join('\n') : '';
     },
   };
 }

@@ -94,7 +94,7 @@ export class RoomLimitsList {
       .filter((rule) => rule.enabled)
       .map(
         (rule) =>
-          `${KIND[rule.kind].toLowerCase()} (after ${this.formats().duration(rule.onDelayMinutes * 60_000)})`,
+          `${KIND[rule.kind].toLowerCase()} (${rule.onDelayMinutes === 0 ? 'at once' : `after ${this.formats().duration(rule.onDelayMinutes * 60_000)}`})`,
       );
     const off = rules.filter((rule) => !rule.enabled).map((rule) => KIND[rule.kind].toLowerCase());
     return [
