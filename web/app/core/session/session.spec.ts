@@ -67,6 +67,25 @@ describe('the session', () => {
     expect(session.accessToken()).toBe('second');
   });
 
+  it('waits for a gateway that is just starting', async () => {
+    localStorage.setItem('stillroom.session', 'yes');
+    const resumed = session.resume();
+    http.expectOne('/api/session/refresh').error(new ProgressEvent('error'));
+    await vi.advanceTimersByTimeAsync(1000);
+    http.expectOne('/api/session/refresh').flush(signedIn('second'));
+    await resumed;
+    expect(session.signedIn()).toBe(true);
+  });
+
+  it('does not ask again when the earlier session was refused', async () => {
+    localStorage.setItem('stillroom.session', 'yes');
+    const resumed = session.resume();
+    http.expectOne('/api/session/refresh').flush(null, { status: 401, statusText: '' });
+    await resumed;
+    expect(session.state()).toBe('signed-out');
+    await vi.advanceTimersByTimeAsync(20_000);
+  });
+
   it('holds permissions studio by studio', async () => {
     await signIn();
     expect(session.may('batches.pour', QUAY)).toBe(true);

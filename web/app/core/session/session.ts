@@ -14,6 +14,8 @@ const EARLY_MS = 60_000;
 const SHORTEST_MS = 30_000;
 const LONGEST_MS = 10 * 60_000;
 const RETRY_MS = 10_000;
+const RESUME_TRIES = 15;
+const RESUME_MS = 1000;
 
 /**
  * Who is signed in. The access token lives in memory only and is exchanged a minute before it ends; the refresh
@@ -48,9 +50,12 @@ export class Session {
 
   /** Takes up the session of an earlier visit, if there is one. Never throws. */
   async resume(): Promise<void> {
-    if (localStorage.getItem(HINT) === null || !(await this.refresh())) {
-      if (this.writableState() === 'unknown') this.writableState.set('signed-out');
+    for (let tries = 0; localStorage.getItem(HINT) !== null && tries < RESUME_TRIES; tries++) {
+      if (await this.refresh()) return;
+      // Refused, the hint is gone; else the gateway is just starting.
+      if (localStorage.getItem(HINT) !== null) await new Promise((resolve) => setTimeout(resolve, RESUME_MS));
     }
+    this.writableState.set('signed-out');
   }
 
   /** Signs in. @throws ApiError */
