@@ -10,13 +10,13 @@ import { Session } from '../../core/session/session';
 import { DataTable } from '../../ui/data-table';
 import { ErrorNote } from '../../ui/error-note';
 import { LoadingNote } from '../../ui/loading-note';
-import { Field } from './field';
+import { FormField } from '../../ui/form-field';
 import { plainTime } from './plain-time';
 
 /** One's own password and the devices one is signed in on. */
 @Component({
   selector: 'sr-account-page',
-  imports: [DataTable, ErrorNote, Field, LoadingNote, MatButton, ReactiveFormsModule],
+  imports: [DataTable, ErrorNote, FormField, LoadingNote, MatButton, ReactiveFormsModule],
   template: `<section class="sr-sheet" aria-labelledby="who">
       <h2 id="who">{{ session.me()?.name }}</h2>
       <p class="sr-muted">{{ session.me()?.email }}</p>
@@ -24,13 +24,13 @@ import { plainTime } from './plain-time';
     <section class="sr-sheet" aria-labelledby="password">
       <h2 id="password">Change the password</h2>
       <form class="sr-form" [formGroup]="form" (ngSubmit)="change()" novalidate>
-        <sr-field
+        <sr-form-field
           label="Present password"
           type="password"
           autocomplete="current-password"
           [control]="form.controls.current"
         />
-        <sr-field
+        <sr-form-field
           label="New password"
           type="password"
           autocomplete="new-password"

@@ -15,7 +15,7 @@ import { Confirm } from '../../ui/confirm-dialog';
 import { DataTable } from '../../ui/data-table';
 import { ErrorNote } from '../../ui/error-note';
 import { LoadingNote } from '../../ui/loading-note';
-import { Field } from './field';
+import { FormField } from '../../ui/form-field';
 import { plainTime } from './plain-time';
 import { StudioChoice } from './studio-choice';
 
@@ -39,7 +39,7 @@ const STATE_WORDS: Readonly<Record<Person['state'], string>> = {
   imports: [
     DataTable,
     ErrorNote,
-    Field,
+    FormField,
     LoadingNote,
     MatButton,
     MatCheckbox,

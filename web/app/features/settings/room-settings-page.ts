@@ -22,7 +22,7 @@ import { DataTable } from '../../ui/data-table';
 import { EmptyNote } from '../../ui/empty-note';
 import { ErrorNote } from '../../ui/error-note';
 import { LoadingNote } from '../../ui/loading-note';
-import { Field } from './field';
+import { FormField } from '../../ui/form-field';
 import { StudioChoice } from './studio-choice';
 import { StudioPicker } from './studio-picker';
 
@@ -46,7 +46,7 @@ const FRESH: RoomLimits = {
     DataTable,
     EmptyNote,
     ErrorNote,
-    Field,
+    FormField,
     LoadingNote,
     MatButton,
     ReactiveFormsModule,

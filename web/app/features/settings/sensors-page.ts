@@ -26,7 +26,7 @@ import { DataTable } from '../../ui/data-table';
 import { EmptyNote } from '../../ui/empty-note';
 import { ErrorNote } from '../../ui/error-note';
 import { LoadingNote } from '../../ui/loading-note';
-import { Field } from './field';
+import { FormField } from '../../ui/form-field';
 import { Quarantine } from './quarantine';
 import { SensorSecret } from './sensor-secret';
 import { StudioChoice } from './studio-choice';
@@ -56,7 +56,7 @@ const HEALTH: Readonly<Record<Sensor['health']['state'], string>> = {
     DataTable,
     EmptyNote,
     ErrorNote,
-    Field,
+    FormField,
     LoadingNote,
     MatButton,
     MatCheckbox,

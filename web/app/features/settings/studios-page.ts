@@ -14,7 +14,7 @@ import { Session } from '../../core/session/session';
 import { DataTable } from '../../ui/data-table';
 import { ErrorNote } from '../../ui/error-note';
 import { LoadingNote } from '../../ui/loading-note';
-import { Field } from './field';
+import { FormField } from '../../ui/form-field';
 import { clockOfMinutes, minutesOfClock } from './plain-time';
 
 const text = (value = '') => new FormControl(value, { nonNullable: true });
@@ -27,7 +27,7 @@ const number = (value: number) =>
   imports: [
     DataTable,
     ErrorNote,
-    Field,
+    FormField,
     LoadingNote,
     MatButton,
     MatCheckbox,

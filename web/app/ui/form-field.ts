@@ -2,11 +2,11 @@ import { ChangeDetectionStrategy, Component, input } from '@angular/core';
 import { type FormControl, ReactiveFormsModule } from '@angular/forms';
 import { MatError, MatFormField, MatHint, MatLabel, MatSuffix } from '@angular/material/form-field';
 import { MatInput } from '@angular/material/input';
-import { controlError } from '../../ui/control-error';
+import { controlError } from './control-error';
 
-/** One line of a settings form: label, input, hint, and what is wrong beside it. */
+/** One line of a form: label, input, hint, and what is wrong beside it. */
 @Component({
-  selector: 'sr-field',
+  selector: 'sr-form-field',
   imports: [MatError, MatFormField, MatHint, MatInput, MatLabel, MatSuffix, ReactiveFormsModule],
   template: `<mat-form-field subscriptSizing="dynamic">
     <mat-label>{{ label() }}</mat-label>
@@ -35,7 +35,7 @@ import { controlError } from '../../ui/control-error';
   `,
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
-export class Field {
+export class FormField {
   readonly label = input.required<string>();
   readonly control = input.required<FormControl<string> | FormControl<number> | FormControl<number | null>>();
   readonly type = input('text');
