@@ -1,4 +1,4 @@
-import type { Alert, AlertKind } from '#shared/contract/alerts';
+import type { Alert } from '#shared/contract/alerts';
 import type { BatchCard } from '#shared/contract/batches';
 import type { RoomNow } from '#shared/contract/overview';
 import type { Rack } from '#shared/contract/racks';
@@ -6,6 +6,7 @@ import { rackReadiness, type RackReadiness } from '#shared/words/rack-readiness'
 import { alertPlace, alertWords } from '#shared/words/alert-words';
 import { list } from '#shared/words/lists';
 import type { StudioFormats } from '../../core/time/studio-formats';
+import { ALERT_STATUS } from '../../ui/alert-status';
 import type { Status } from '../../ui/status-mark';
 
 /** One thing that needs somebody now. */
@@ -39,18 +40,6 @@ export interface NeedStudio {
   /** Whether the person has to do with tests here; a viewer only reads what is ready. */
   readonly tests: boolean;
 }
-
-export const ALERT_STATUS: Record<AlertKind, Status> = {
-  'too-warm': 'heat',
-  'too-cold': 'cold',
-  'too-damp': 'damp',
-  condensation: 'damp',
-  swinging: 'swinging',
-  silent: 'silent',
-  stuck: 'silent',
-  battery: 'notice',
-  'intake-silent': 'silent',
-};
 
 const WEIGHT = { critical: 0, warning: 1, notice: 2 } as const;
 
