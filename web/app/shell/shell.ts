@@ -10,7 +10,6 @@ import {
   viewChild,
 } from '@angular/core';
 import { toSignal } from '@angular/core/rxjs-interop';
-import { MatMenu, MatMenuItem, MatMenuTrigger } from '@angular/material/menu';
 import { NavigationEnd, Router, RouterLink, RouterOutlet } from '@angular/router';
 import { filter, map, pairwise } from 'rxjs';
 import { LiveStore } from '../core/live/live-store';
@@ -18,6 +17,7 @@ import { Session } from '../core/session/session';
 import { Icon } from '../ui/icon';
 import { AccountMenu } from './account-menu';
 import { ConnectionBanner } from './connection-banner';
+import { MoreMenu } from './more-menu';
 import { isCurrent, NAVIGATION } from './navigation';
 import { NoticesBell } from './notices-bell';
 
@@ -26,17 +26,7 @@ const ON_THE_BAR = 4;
 /** What stands around every page of a signed-in person: navigation, connection, notices, account. */
 @Component({
   selector: 'sr-shell',
-  imports: [
-    AccountMenu,
-    ConnectionBanner,
-    Icon,
-    MatMenu,
-    MatMenuItem,
-    MatMenuTrigger,
-    NoticesBell,
-    RouterLink,
-    RouterOutlet,
-  ],
+  imports: [AccountMenu, ConnectionBanner, Icon, MoreMenu, NoticesBell, RouterLink, RouterOutlet],
   templateUrl: './shell.html',
   styleUrl: './shell.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -61,7 +51,6 @@ export class Shell {
   });
   protected readonly onTheBar = computed(() => this.items().slice(0, ON_THE_BAR));
   protected readonly underMore = computed(() => this.items().slice(ON_THE_BAR));
-  protected readonly moreIsCurrent = computed(() => this.underMore().some((item) => item.current));
   /** Open alerts that nobody has acknowledged yet. */
   protected readonly waiting = computed(
     () =>

@@ -1,14 +1,13 @@
 import { ChangeDetectionStrategy, Component, input, output } from '@angular/core';
-import { MatButton } from '@angular/material/button';
 import { StatusMark } from './status-mark';
 
 /** Says what went wrong and offers to try again. */
 @Component({
   selector: 'sr-error-note',
-  imports: [MatButton, StatusMark],
+  imports: [StatusMark],
   template: `<p role="alert"><sr-status-mark status="heat" /> {{ text() }}</p>
     @if (retryable()) {
-      <button mat-stroked-button type="button" (click)="retry.emit()">Try again</button>
+      <button class="sr-text-button" type="button" (click)="retry.emit()">Try again</button>
     }`,
   styles: `
     :host {

@@ -1,5 +1,4 @@
 import { ChangeDetectionStrategy, Component, computed, input, signal } from '@angular/core';
-import { MatButton } from '@angular/material/button';
 import { RouterLink } from '@angular/router';
 import { StatusMark } from '../../ui/status-mark';
 import type { NeedLine } from './needs-now';
@@ -9,7 +8,7 @@ const SHOWN = 6;
 /** The short list of what needs somebody now; each line leads to it and says whose it is. */
 @Component({
   selector: 'sr-needs-list',
-  imports: [MatButton, RouterLink, StatusMark],
+  imports: [RouterLink, StatusMark],
   template: `<h2 class="sr-only">What needs somebody now</h2>
     <ul>
       @for (line of shown(); track line.id) {
@@ -33,7 +32,7 @@ const SHOWN = 6;
       }
     </ul>
     @if (more() > 0) {
-      <button mat-button type="button" (click)="all.set(!all())" [attr.aria-expanded]="all()">
+      <button class="sr-text-button" type="button" (click)="all.set(!all())" [attr.aria-expanded]="all()">
         {{ all() ? 'Show fewer' : 'Show ' + more() + ' more' }}
       </button>
     }`,
