@@ -59,7 +59,12 @@ import { ChangeDetectionStrategy, Component, input } from '@angular/core';
       background: var(--sr-good);
     }
   `,
-  host: { '[class.ready]': 'ready()', role: 'img', '[attr.aria-label]': 'label()' },
+  host: {
+    '[class.ready]': 'ready()',
+    '[attr.role]': "label() ? 'img' : null",
+    '[attr.aria-label]': 'label() || null',
+    '[attr.aria-hidden]': "label() ? null : 'true'",
+  },
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class ReadyBar {
@@ -69,8 +74,8 @@ export class ReadyBar {
   readonly high = input.required<number>();
   readonly notches = input<readonly number[]>([]);
   readonly ready = input(false);
-  /** The bar in words, e.g. "L-118, poured 24 April, ready 8 May, 6 to 10 May". */
-  readonly label = input.required<string>();
+  /** The bar in words; '' where text beside it says the same, e.g. "L-118, poured 24 April, ready 8 May, 6 to 10 May". */
+  readonly label = input('');
 
   protected at(part: number): number {
     return Math.min(1, Math.max(0, part)) * 100;
