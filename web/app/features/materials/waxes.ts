@@ -9,7 +9,7 @@ import { Api } from '../../core/api/api';
 import { showFieldErrors } from '../../core/api/api-error';
 import { DataTable } from '../../ui/data-table';
 import { FormField } from '../../ui/form-field';
-import { FAMILY_WORDS } from './family-words';
+import { FAMILY_WORDS } from '../../ui/family-words';
 
 const needed = (value = 0) =>
   new FormControl(value, { nonNullable: true, validators: [Validators.required] });

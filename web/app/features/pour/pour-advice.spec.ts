@@ -1,0 +1,51 @@
+import { describe, expect, it } from 'vitest';
+import type { Design, Fragrance, Wax } from '#shared/contract/materials';
+import { WAX_FAMILY_DEFAULTS } from '#shared/cure/wax-families';
+import { pourAdvice } from './pour-advice';
+
+const wax: Wax = {
+  ...{
+    id: 'w',
+    name: 'Meadow soy',
+    family: 'soy-container',
+    pourLow: 55,
+    pourHigh: 65,
+    provenance: '',
+    version: 1,
+  },
+  kinetics: WAX_FAMILY_DEFAULTS['soy-container'].kinetics,
+};
+const fig: Fragrance = { id: 'f', name: 'Fig Leaf', flashPoint: 62, certificateMaxLoad: 8 };
+const design = (loadPercentOfWax: number): Design => ({
+  ...{
+    id: 'd',
+    name: 'Fig',
+    waxId: 'w',
+    fragranceId: 'f',
+    loadPercentOfWax,
+    wick: 'Cotton 12',
+    vessel: 'Jar',
+  },
+  ...{ vesselDiameterMm: 75, fillGrams: 220, lastTest: null, version: 1 },
+});
+
+describe('advice for a pour', () => {
+  it('weighs both and says the load both ways', () => {
+    expect(pourAdvice(design(10), wax, null, 12, 58)).toEqual({
+      wax: '2,400 g (84.7 oz)',
+      fragrance: '240 g (8.5 oz)',
+      load: '10 % of wax = 9.1 % of mix',
+      warnings: [],
+    });
+  });
+
+  it('warns above the wax’s and the certificate’s maximum, above the flash point, outside the pouring range', () => {
+    expect(pourAdvice(design(11), wax, fig, 1, 66).warnings).toEqual([
+      expect.stringMatching(/above what Meadow soy takes/),
+      expect.stringMatching(/certificate of Fig Leaf: 9.9 % of mix, at most 8 %/),
+      expect.stringMatching(/flash point of Fig Leaf \(62 °C\)/),
+      expect.stringMatching(/usually poured at 55 to 65 °C/),
+    ]);
+    expect(pourAdvice(design(6), wax, fig, 1, null).warnings).toEqual([]);
+  });
+});

@@ -1,0 +1,216 @@
+import {
+  ChangeDetectionStrategy,
+  Component,
+  computed,
+  effect,
+  inject,
+  input,
+  signal,
+  untracked,
+} from '@angular/core';
+import { toSignal } from '@angular/core/rxjs-interop';
+import { FormControl, FormGroup, ReactiveFormsModule, Validators } from '@angular/forms';
+import { MatButton } from '@angular/material/button';
+import { MatCheckbox } from '@angular/material/checkbox';
+import { MatError, MatFormField, MatLabel } from '@angular/material/form-field';
+import { MatOption, MatSelect } from '@angular/material/select';
+import { Router, RouterLink } from '@angular/router';
+import type { batchRoutes } from '#shared/contract/batches';
+import type { Design, Fragrance, materialRoutes, Wax } from '#shared/contract/materials';
+import { fromFahrenheit, toFahrenheit } from '#shared/units/temperature';
+import { Announcer } from '../../core/announcer/announcer';
+import { Api } from '../../core/api/api';
+import { showFieldErrors } from '../../core/api/api-error';
+import { Loadable } from '../../core/api/loadable';
+import { LiveStore } from '../../core/live/live-store';
+import { shelfGroups } from '../../core/live/shelf-groups';
+import { Session } from '../../core/session/session';
+import { StudioClock } from '../../core/time/studio-clock';
+import { Formats } from '../../core/time/studio-formats';
+import { instantOfLocal, localInput } from '../../core/time/zoned-time';
+import { EmptyNote } from '../../ui/empty-note';
+import { ErrorNote } from '../../ui/error-note';
+import { FormField } from '../../ui/form-field';
+import { LoadingNote } from '../../ui/loading-note';
+import { PageHeader } from '../../ui/page-header';
+import { ShelfChoice } from '../../ui/shelf-choice';
+import { pourAdvice } from './pour-advice';
+
+interface Materials {
+  readonly designs: readonly Design[];
+  readonly waxes: readonly Wax[];
+  readonly fragrances: readonly Fragrance[];
+}
+
+/** Starts a batch and places it. */
+@Component({
+  selector: 'sr-pour-page',
+  imports: [
+    EmptyNote,
+    ErrorNote,
+    FormField,
+    LoadingNote,
+    MatButton,
+    MatCheckbox,
+    MatError,
+    MatFormField,
+    MatLabel,
+    MatOption,
+    MatSelect,
+    PageHeader,
+    ReactiveFormsModule,
+    RouterLink,
+    ShelfChoice,
+  ],
+  templateUrl: './pour-page.html',
+  styleUrl: './pour-page.scss',
+  changeDetection: ChangeDetectionStrategy.OnPush,
+})
+export class PourPage {
+  /** Id of an earlier batch to be poured again, from the query. */
+  readonly repeat = input<string>();
+
+  private readonly api = inject(Api);
+  private readonly router = inject(Router);
+  private readonly announcer = inject(Announcer);
+  private readonly session = inject(Session);
+  private readonly clock = inject(StudioClock);
+  private readonly formatsOf = inject(Formats);
+  protected readonly live = inject(LiveStore);
+  protected readonly materials = new Loadable<Materials>();
+  protected readonly shelfId = signal('');
+  protected readonly overfill = signal(false);
+  protected readonly shelfIsFull = signal(false);
+  protected readonly fault = signal<string | null>(null);
+  protected readonly busy = signal(false);
+  protected readonly form = new FormGroup({
+    studioId: new FormControl('', { nonNullable: true, validators: [Validators.required] }),
+    designId: new FormControl('', { nonNullable: true, validators: [Validators.required] }),
+    vessels: new FormControl(24, { nonNullable: true, validators: [Validators.required, Validators.min(1)] }),
+    pouredAt: new FormControl('', { nonNullable: true, validators: [Validators.required] }),
+    pourCelsius: new FormControl<number | null>(null),
+    notes: new FormControl('', { nonNullable: true }),
+  });
+  private readonly values = toSignal(this.form.valueChanges);
+  protected readonly studios = computed(() =>
+    this.live.studios().filter(({ id }) => this.session.may('batches.pour', id)),
+  );
+  protected readonly studio = computed(() => {
+    this.values();
+    return this.studios().find(({ id }) => id === this.form.getRawValue().studioId) ?? null;
+  });
+  protected readonly formats = computed(() => {
+    const studio = this.studio();
+    return studio ? this.formatsOf.of(studio.studio()) : null;
+  });
+  private readonly design = computed(() => {
+    this.values();
+    const { designId } = this.form.getRawValue();
+    return this.materials.value()?.designs.find(({ id }) => id === designId) ?? null;
+  });
+  private readonly wax = computed(() => {
+    const waxId = this.design()?.waxId;
+    return this.materials.value()?.waxes.find(({ id }) => id === waxId) ?? null;
+  });
+  protected readonly advice = computed(() => {
+    this.values();
+    const [design, wax] = [this.design(), this.wax()];
+    const { vessels, pourCelsius } = this.form.getRawValue();
+    if (!design || !wax || !(vessels >= 1)) return null;
+    const oil = this.materials.value()?.fragrances.find(({ id }) => id === design.fragranceId) ?? null;
+    return pourAdvice(design, wax, oil, vessels, pourCelsius === null ? null : this.celsius(pourCelsius));
+  });
+  protected readonly shelves = computed(() => {
+    this.values();
+    const [studio, formats] = [this.studio(), this.formats()];
+    if (!studio || !formats) return { groups: [], suggestion: null };
+    const kinetics = this.wax()?.kinetics;
+    const limit = !kinetics || kinetics.frosting === 'no' ? null : kinetics.frostingFrom;
+    return shelfGroups(studio, this.form.getRawValue().vessels, limit, formats);
+  });
+
+  constructor() {
+    void this.load();
+    effect(() => {
+      const first = this.studios()[0];
+      if (first && untracked(() => this.form.getRawValue().studioId) === '') {
+        this.form.patchValue({ studioId: first.id, pouredAt: this.nowIn(first.studio().timeZone) });
+      }
+    });
+    effect(() => {
+      const id = this.repeat();
+      if (id && this.materials.value() && this.live.loaded()) untracked(() => void this.prefill(id));
+    });
+  }
+
+  protected load(): Promise<void> {
+    return this.materials.load(async () => {
+      const [designs, waxes, fragrances] = await Promise.all([
+        this.api.call<typeof materialRoutes.designs>('GET', '/api/designs'),
+        this.api.call<typeof materialRoutes.waxes>('GET', '/api/waxes'),
+        this.api.call<typeof materialRoutes.fragrances>('GET', '/api/fragrances'),
+      ]);
+      return { designs, waxes, fragrances };
+    });
+  }
+
+  protected async pour(): Promise<void> {
+    const studio = this.studio();
+    this.form.markAllAsTouched();
+    if (studio === null || this.form.invalid || this.busy()) return;
+    this.busy.set(true);
+    this.fault.set(null);
+    const { designId, vessels, pouredAt, pourCelsius, notes } = this.form.getRawValue();
+    try {
+      const page = await this.api.call<typeof batchRoutes.pour>('POST', '/api/studios/:studioId/batches', {
+        params: { studioId: studio.id },
+        body: {
+          ...{ designId, vessels, notes },
+          pouredAt: new Date(instantOfLocal(pouredAt, studio.studio().timeZone)).toISOString(),
+          pourCelsius: pourCelsius === null ? null : this.celsius(pourCelsius),
+          shelfId: this.shelfId() === '' ? null : this.shelfId(),
+          overfill: this.overfill(),
+        },
+      });
+      this.announcer.say(`${page.card.code} was started.`);
+      await this.router.navigate(['/batches', page.card.id], { queryParams: { studio: studio.id } });
+    } catch (error) {
+      this.fault.set(showFieldErrors(error, this.form));
+      this.shelfIsFull.set((error as { code?: string }).code === 'shelf-full');
+    } finally {
+      this.busy.set(false);
+    }
+  }
+
+  /** Takes design, vessels and temperature from an earlier batch. */
+  private async prefill(batchId: string): Promise<void> {
+    for (const { id: studioId } of this.studios()) {
+      const page = await this.api
+        .call<typeof batchRoutes.get>('GET', '/api/studios/:studioId/batches/:batchId', {
+          params: { studioId, batchId },
+          query: {},
+        })
+        .catch(() => null);
+      if (!page?.recipe) continue;
+      const pour = page.recipe.pourCelsius;
+      this.form.patchValue({
+        ...{ studioId, designId: page.recipe.designId, vessels: page.card.vessels, notes: page.notes },
+        pourCelsius: pour === null ? null : this.shown(pour),
+        pouredAt: this.nowIn(this.studio()?.studio().timeZone ?? 'UTC'),
+      });
+      return;
+    }
+  }
+
+  private nowIn(timeZone: string): string {
+    return localInput(this.clock.minute(), timeZone);
+  }
+
+  private celsius(shown: number): number {
+    return this.formats()?.unit === 'F' ? fromFahrenheit(shown) : shown;
+  }
+
+  private shown(celsius: number): number {
+    return Math.round(this.formats()?.unit === 'F' ? toFahrenheit(celsius) : celsius);
+  }
+}
