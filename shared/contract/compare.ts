@@ -36,6 +36,8 @@ export const pairComparison = z.object({
   pAdjusted: z.number().nullable(),
 });
 
+export type PairComparison = z.infer<typeof pairComparison>;
+
 export const compareRoutes = {
   compare: defineRoute({
     method: 'GET',
