@@ -48,7 +48,7 @@ describe('a batch in words', () => {
       ...{ meanCelsius: 18.2, hours: 3.24, because: 'colder' },
     };
     expect(shiftWords(shift, formats)).toMatchObject({
-      what: 'Colder than 21 °C in the Loft, mean 18.2 °C',
+      what: expect.stringMatching(/^Colder than 21\s°C in the Loft, mean 18.2\s°C$/),
       by: '3.2 h later',
     });
     expect(shiftWords({ ...shift, roomName: null, because: 'gap', meanCelsius: null }, formats).what).toBe(

@@ -12,7 +12,7 @@ const nameOf = (id: string) => (id === 'a' ? 'Quay Street' : 'High Barn');
 describe('what may be said of two studios', () => {
   it('tells the difference with its interval', () => {
     expect(pairSentence(pair({}), nameOf, 'soy')).toBe(
-      'soy: batches take 1.52 days shorter in Quay Street than in High Barn (95 %: −2.3 to −0.73 days, adjusted p 0.001).',
+      'soy: batches take 1.52 days shorter in Quay Street than in High Barn (95 %: −2.30 to −0.73 days, adjusted p 0.001).',
     );
   });
 

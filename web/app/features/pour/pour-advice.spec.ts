@@ -32,9 +32,9 @@ const design = (loadPercentOfWax: number): Design => ({
 describe('advice for a pour', () => {
   it('weighs both and says the load both ways', () => {
     expect(pourAdvice(design(10), wax, null, 12, 58)).toEqual({
-      wax: '2,400 g (84.7 oz)',
+      wax: '2400 g (84.7 oz)',
       fragrance: '240 g (8.5 oz)',
-      load: '10 % of wax = 9.1 % of mix',
+      load: '10.0 % of wax = 9.1 % of mix',
       warnings: [],
     });
   });
@@ -42,7 +42,7 @@ describe('advice for a pour', () => {
   it('warns above the wax’s and the certificate’s maximum, above the flash point, outside the pouring range', () => {
     expect(pourAdvice(design(11), wax, fig, 1, 66).warnings).toEqual([
       expect.stringMatching(/above what Meadow soy takes/),
-      expect.stringMatching(/certificate of Fig Leaf: 9.9 % of mix, at most 8 %/),
+      expect.stringMatching(/certificate of Fig Leaf: 9.9 % of mix, at most 8.0 %/),
       expect.stringMatching(/flash point of Fig Leaf \(62 °C\)/),
       expect.stringMatching(/usually poured at 55 to 65 °C/),
     ]);
