@@ -43,7 +43,7 @@ describe('a line of the alerts list', () => {
   it('tells how long it lasted once it is over', () => {
     const over = alert({ state: 'returned', clearedAt: '2026-05-04T14:20:00Z' });
     expect(alertLine(over, formats, NOW).figures).toMatch(
-      /^Over: too warm lasted (60 min|1 h), at worst 26.4 °C.$/,
+      /^Over: too warm lasted 60.min, at worst 26.4.°C\.$/,
     );
   });
 

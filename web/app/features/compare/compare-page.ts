@@ -24,7 +24,7 @@ import { ErrorNote } from '../../ui/error-note';
 import { FAMILY_WORDS } from '../../ui/family-words';
 import { LoadingNote } from '../../ui/loading-note';
 import { PageHeader } from '../../ui/page-header';
-import { comparisonCsv, MEASURES, pairSentence } from './compare-words';
+import { comparisonCsv, MEASURES, pairSentence, tooFewSentence } from './compare-words';
 import { type Dot, DotPlot } from './dot-plot';
 
 type Comparison = ReplyOf<typeof compareRoutes.compare>;
@@ -116,7 +116,12 @@ export class ComparePage {
     const known = this.comparison.value();
     if (!known) return [];
     const nameOf = (id: string) => known.studios.find(({ studioId }) => studioId === id)?.studioName ?? '';
-    return known.pairs.map((pair) => pairSentence(pair, nameOf, FAMILY_WORDS[pair.waxFamily]));
+    const enough = known.pairs.filter(({ verdict }) => verdict !== 'too-few');
+    const few = known.pairs.length - enough.length;
+    return [
+      ...enough.map((pair) => pairSentence(pair, nameOf, FAMILY_WORDS[pair.waxFamily])),
+      ...(few === 0 ? [] : [tooFewSentence(few)]),
+    ];
   });
 
   constructor() {

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import type { PairComparison } from '#shared/contract/compare';
-import { csvCell, pairSentence } from './compare-words';
+import { csvCell, pairSentence, tooFewSentence } from './compare-words';
 
 const pair = (change: Partial<PairComparison>): PairComparison => ({
   ...{ waxFamily: 'soy-container', studioA: 'a', studioB: 'b', verdict: 'different' },

@@ -59,6 +59,11 @@ export function pairSentence(
   return `${family}: batches take ${figure(Math.abs(pair.difference), 2)} days ${way} in ${a} than in ${b}${intervalOf(pair)}.`;
 }
 
+/** For pairs about which nothing may be said yet. */
+export function tooFewSentence(pairs: number): string {
+  return `For ${pairs} ${pairs === 1 ? 'pair' : 'pairs'} of studios and wax there are too few batches to say anything; 8 in each studio are needed.`;
+}
+
 function intervalOf({ low, high, pAdjusted }: PairComparison): string {
   if (low === null || high === null) return '';
   const p = pAdjusted === null ? '' : `, adjusted p ${figure(pAdjusted, 3)}`;

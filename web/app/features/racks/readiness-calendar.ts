@@ -28,6 +28,8 @@ export interface CalendarBar {
   readonly ready: boolean;
   /** "ready", "Fri 8 May (6 to 12 May)", "no date" */
   readonly when: string;
+  /** Where the words stand so that they cover no bar. */
+  readonly side: 'after' | 'before' | 'below';
 }
 
 export interface CalendarRow {
@@ -142,7 +144,14 @@ function barOf(batch: BatchCard, gateName: GateName, formats: StudioFormats, now
     notches: notch === null ? [] : [place(notch)],
     ready,
     when: whenOf(gate, formats, now),
+    side: sideOf(place(batch.pouredAt), ready || middle === null ? at : place(gate.t90 ?? middle)),
   };
+}
+
+/** Words need about a third of the width. */
+function sideOf(start: number, high: number): CalendarBar['side'] {
+  if (high < 0.66) return 'after';
+  return start > 0.34 ? 'before' : 'below';
 }
 
 function whenOf(gate: GateView, formats: StudioFormats, now: number): string {
