@@ -50,8 +50,6 @@ export function pairSentence(
   family: string,
 ): string {
   const [a, b] = [nameOf(pair.studioA), nameOf(pair.studioB)];
-  if (pair.verdict === 'too-few')
-    return `${family}, ${a} and ${b}: too few batches to say (8 in each are needed).`;
   if (pair.verdict === 'no-clear-difference' || pair.difference === null) {
     return `${family}, ${a} and ${b}: no clear difference${intervalOf(pair)}.`;
   }
