@@ -44,7 +44,7 @@ test('an invitation goes out by mail and is accepted', async ({ page, browser, d
   await signIn(page, PEOPLE.owner);
   await page.goto('/settings/people');
   await page.getByRole('button', { name: 'Invite somebody' }).click();
-  await page.getByLabel('E-mail').fill(email);
+  await page.getByRole('textbox', { name: 'E-mail' }).fill(email);
   await page.getByRole('combobox', { name: 'High Barn' }).click();
   await page.getByRole('option', { name: /^maker/ }).click();
   await page.getByRole('button', { name: 'Send the invitation' }).click();
