@@ -10,9 +10,7 @@ import { controlError } from './control-error';
   imports: [MatError, MatFormField, MatHint, MatInput, MatLabel, MatSuffix, ReactiveFormsModule],
   template: `<mat-form-field subscriptSizing="dynamic">
     <mat-label>{{ label() }}</mat-label>
-    @if (type() === 'number') {
-      <!-- The type stands in the text, or the form would get what was typed as text instead of a number. -->
-      <!-- The type must stand in the template: by it the forms know that a value is a number. -->
+    <!-- The type must stand in the template: by it the forms know that a value is a number. -->
     @if (type() === 'number') {
       <input matInput type="number" [formControl]="control()" [step]="step()" autocomplete="off" />
     } @else {
