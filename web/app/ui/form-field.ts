@@ -4,13 +4,15 @@ import { MatError, MatFormField, MatHint, MatLabel, MatSuffix } from '@angular/m
 import { MatInput } from '@angular/material/input';
 import { controlError } from './control-error';
 
-/** One line of a form: label, input, hint, and what is wrong beside it. */
+/**
+ * One line of a form: label, input, hint, and what is wrong beside it. The type of a number stands in the template: by it
+ * the forms know that a value is a number.
+ */
 @Component({
   selector: 'sr-form-field',
   imports: [MatError, MatFormField, MatHint, MatInput, MatLabel, MatSuffix, ReactiveFormsModule],
   template: `<mat-form-field subscriptSizing="dynamic">
     <mat-label>{{ label() }}</mat-label>
-    <!-- The type must stand in the template: by it the forms know that a value is a number. -->
     @if (type() === 'number') {
       <input matInput type="number" [formControl]="control()" [step]="step()" autocomplete="off" />
     } @else {
