@@ -2,6 +2,7 @@ import type { BatchCard, GateView } from '#shared/contract/batches';
 import type { Rack } from '#shared/contract/racks';
 import type { StudioFormats } from '../../core/time/studio-formats';
 import { DAY_MS, epoch, zonedParts } from '../../core/time/zoned-time';
+import { gateInShort, gateWhen } from './readiness-words';
 
 export type GateName = 'wickTest' | 'ship';
 
@@ -26,24 +27,38 @@ export interface CalendarBar {
   readonly high: number;
   readonly notches: readonly number[];
   readonly ready: boolean;
-  /** "ready", "Fri 8 May (6 to 12 May)", "no date" */
+  /** "ready", "Fri 8 May", "no date yet" */
+  readonly short: string;
+  /** "ready", "Fri 8 May (6 to 12 May)", "no date yet" */
   readonly when: string;
-  /** Where the words stand so that they cover no bar. */
-  readonly side: 'after' | 'before' | 'below';
+  /** Where the words stand so that they cover neither whisker nor middle. */
+  readonly side: 'after' | 'before' | 'within';
+  readonly batch: BatchCard;
+  /** "Wed 22 Apr" */
+  readonly poured: string;
 }
 
 export interface CalendarRow {
   readonly id: string;
   readonly studioId: string;
+  /** "Quay Street, Loft" */
   readonly place: string;
   readonly roomId: string;
+  readonly roomName: string;
   readonly name: string;
+  /** "4 shelves, 96 vessels" */
   readonly size: string;
   readonly vessels: number;
   readonly bars: readonly CalendarBar[];
-  /** When the last batch passes the gate, epoch ms; null: one has no date. */
-  readonly readyAt: number | null;
-  readonly lastCode: string;
+  /** This moment on the four weeks, by the studio's own clock, 0–1. */
+  readonly now: number;
+  readonly formats: StudioFormats;
+  /** When the last batch has gathered its days, epoch ms; null: one has no date. */
+  readonly curedAt: number | null;
+  /** A batch has no passing wick test, so that the rack is not ready when it is cured. */
+  readonly untested: boolean;
+  /** The batch that takes longest. */
+  readonly last: BatchCard;
 }
 
 export interface CalendarDay {
@@ -58,6 +73,10 @@ export interface CalendarDay {
 /** Days before today and days in all. */
 const BEFORE = 12;
 export const DAYS = 28;
+/** Place of what has no date: past the edge. */
+const BEYOND = 2;
+/** Part of the width that a batch's words need. */
+const WORDS = 0.13;
 
 /** Local wall time as if it were UTC, so that every studio's midnights fall on the same lines. */
 function wallTime(instant: string | number, timeZone: string): number {
@@ -65,14 +84,13 @@ function wallTime(instant: string | number, timeZone: string): number {
   return Date.UTC(year, month - 1, day, hour, minute);
 }
 
-/** First midnight of the four weeks for a studio, as wall time. */
-function windowStart(now: number, timeZone: string): number {
+/** First midnight of the four weeks, as wall time: the same date for every studio. @param now epoch ms */
+export function calendarStart(now: number, timeZone: string): number {
   return Math.floor(wallTime(now, timeZone) / DAY_MS) * DAY_MS - BEFORE * DAY_MS;
 }
 
-/** The days across the top, by the calendar of a zone. */
-export function calendarDays(now: number, timeZone: string): CalendarDay[] {
-  const start = windowStart(now, timeZone);
+/** The days across the top. @param start see calendarStart */
+export function calendarDays(start: number): CalendarDay[] {
   return Array.from({ length: DAYS }, (_, index) => {
     const parts = zonedParts(start + index * DAY_MS, 'UTC');
     return {
@@ -85,30 +103,41 @@ export function calendarDays(now: number, timeZone: string): CalendarDay[] {
   });
 }
 
-/** Place of an instant on the four weeks of a studio, 0–1; may lie outside. */
-export function placeOf(instant: string | number, now: number, timeZone: string): number {
-  return (wallTime(instant, timeZone) - windowStart(now, timeZone)) / (DAYS * DAY_MS);
+/** Place of an instant on the four weeks by a studio's own clock, 0–1; may lie outside. */
+export function placeOf(instant: string | number, start: number, timeZone: string): number {
+  return (wallTime(instant, timeZone) - start) / (DAYS * DAY_MS);
 }
 
-/** When a gate was or will be passed, epoch ms; null without a date. */
-export function passedAt(gate: GateView): number | null {
+/** The date of the next Friday (today, if it is one) by a studio's calendar, "2026-05-08". */
+export function nextFriday(now: number, timeZone: string): string {
+  const today = Math.floor(wallTime(now, timeZone) / DAY_MS) * DAY_MS;
+  const FRIDAY = 5;
+  const ahead = (FRIDAY - new Date(today).getUTCDay() + 7) % 7;
+  return new Date(today + ahead * DAY_MS).toISOString().slice(0, 10);
+}
+
+/** When a gate's days were or will be gathered, epoch ms; null without a date. */
+export function curedAt(gate: GateView, now: number): number | null {
+  if (gate.state === 'unknown' || gate.blockedBy.includes('re-softened')) return null;
   const at = gate.reachedAt ?? gate.t50;
-  return at === null ? null : epoch(at);
+  if (at !== null) return epoch(at);
+  return gate.chanceNow >= 0.5 ? now : null;
 }
 
-/** One row of the calendar. @param now epoch ms */
-export function calendarRow(place: RackInStudio, gateName: GateName, now: number): CalendarRow {
+/** One row of the calendar; a rack that holds nothing has none. @param start see calendarStart @param now epoch ms */
+export function calendarRow(
+  place: RackInStudio,
+  gateName: GateName,
+  start: number,
+  now: number,
+): CalendarRow | null {
   const { rack, batches, formats } = place;
-  const bars = [...batches]
-    .sort((a, b) => epoch(a.pouredAt) - epoch(b.pouredAt))
-    .map((batch) => barOf(batch, gateName, formats, now));
-  const passed = batches.map((batch) => ({ code: batch.code, at: passedAt(batch[gateName]) }));
-  const last = passed.reduce(
-    (latest, one) => ((one.at ?? Infinity) > (latest.at ?? Infinity) ? one : latest),
-    {
-      code: '',
-      at: -Infinity as number | null,
-    },
+  const first = batches[0];
+  if (!first) return null;
+  const whenCured = (batch: BatchCard) => curedAt(batch[gateName], now);
+  const last = batches.reduce(
+    (latest, one) => ((whenCured(one) ?? Infinity) > (whenCured(latest) ?? Infinity) ? one : latest),
+    first,
   );
   const shelves = rack.shelves.length;
   const vessels = batches.reduce((sum, batch) => sum + batch.vessels, 0);
@@ -117,83 +146,55 @@ export function calendarRow(place: RackInStudio, gateName: GateName, now: number
     studioId: place.studioId,
     place: `${place.studioName}, ${place.roomName}`,
     roomId: place.roomId,
+    roomName: place.roomName,
     name: rack.name,
     size: `${shelves} ${shelves === 1 ? 'shelf' : 'shelves'}, ${vessels} vessels`,
     vessels,
-    bars,
-    readyAt: passed.some(({ at }) => at === null) ? null : last.at,
-    lastCode: last.code,
+    bars: [...batches]
+      .sort((a, b) => epoch(a.pouredAt) - epoch(b.pouredAt))
+      .map((batch) => barOf(batch, gateName, formats, start, now)),
+    now: placeOf(now, start, formats.timeZone),
+    formats,
+    curedAt: whenCured(last),
+    untested: batches.some((batch) => batch[gateName].blockedBy.includes('no-passing-test')),
+    last,
   };
 }
 
-function barOf(batch: BatchCard, gateName: GateName, formats: StudioFormats, now: number): CalendarBar {
+function barOf(
+  batch: BatchCard,
+  gateName: GateName,
+  formats: StudioFormats,
+  start: number,
+  now: number,
+): CalendarBar {
   const gate = batch[gateName];
-  const other = batch[gateName === 'ship' ? 'wickTest' : 'ship'];
-  const place = (instant: string | number) => placeOf(instant, now, formats.timeZone);
-  const middle = passedAt(gate);
-  const ready = gate.state === 'reached';
-  const notch = passedAt(other);
-  const at = place(middle ?? now);
+  const place = (instant: string | number) => placeOf(instant, start, formats.timeZone);
+  const cured = curedAt(gate, now);
+  const middle = cured === null ? BEYOND : place(cured);
+  const open = cured !== null && gate.reachedAt === null;
+  const high = open ? place(gate.t90 ?? cured) : middle;
+  const other = curedAt(batch[gateName === 'ship' ? 'wickTest' : 'ship'], now);
+  const poured = place(batch.pouredAt);
   return {
     id: batch.id,
     code: batch.code,
-    start: place(batch.pouredAt),
-    middle: at,
-    low: ready || middle === null ? at : place(gate.t10 ?? now),
-    high: ready || middle === null ? at : place(gate.t90 ?? middle),
-    notches: notch === null ? [] : [place(notch)],
-    ready,
-    when: whenOf(gate, formats, now),
-    side: sideOf(place(batch.pouredAt), ready || middle === null ? at : place(gate.t90 ?? middle)),
+    start: poured,
+    middle,
+    low: open ? place(gate.t10 ?? now) : middle,
+    high,
+    // A gate that comes after the end of the bar would stand in the void.
+    notches: other === null || place(other) >= middle ? [] : [place(other)],
+    ready: gate.state === 'reached',
+    short: gateInShort(gate, formats, now),
+    when: gateWhen(gate, formats, now),
+    side: high < 1 - WORDS ? 'after' : poured > WORDS ? 'before' : 'within',
+    batch,
+    poured: formats.day(batch.pouredAt),
   };
 }
 
-/** Words need about a third of the width. */
-function sideOf(start: number, high: number): CalendarBar['side'] {
-  if (high < 0.66) return 'after';
-  return start > 0.34 ? 'before' : 'below';
-}
-
-function whenOf(gate: GateView, formats: StudioFormats, now: number): string {
-  if (gate.state === 'reached') return 'ready';
-  if (gate.blockedBy.includes('re-softened')) return 'softened again, check by hand';
-  if (gate.reachedAt !== null) return 'cured, waits for a passing wick test';
-  if (gate.t50 === null) return gate.chanceNow >= 0.5 ? 'any time now' : 'no date yet';
-  const low = gate.t10 === null ? formats.daySeenFrom(now, now) : formats.daySeenFrom(gate.t10, now);
-  const high = gate.t90 === null ? 'later' : formats.daySeenFrom(gate.t90, now);
-  return `${formats.daySeenFrom(gate.t50, now)} (${low} to ${high})`;
-}
-
-/**
- * The sentence above the calendar: what is ready by the end of a day, and which rack takes longest.
- * @param by end of the day asked for, epoch ms  @param byWords "Friday 8 May"
- */
-export function readinessSentence(
-  rows: readonly CalendarRow[],
-  gateName: GateName,
-  by: number,
-  byWords: string,
-  formatsOf: (studioId: string) => StudioFormats | null,
-  now: number,
-): { lead: string; rest: string } {
-  const what = gateName === 'ship' ? 'Ready to ship' : 'Ready for the wick test';
-  const ready = rows.filter(({ readyAt }) => readyAt !== null && readyAt <= by);
-  const vessels = ready.reduce((sum, row) => sum + row.vessels, 0);
-  const lead =
-    ready.length === 0
-      ? `No rack is ${what.charAt(0).toLowerCase()}${what.slice(1)} by ${byWords}.`
-      : `${what} by ${byWords}: ${ready.length} ${ready.length === 1 ? 'rack' : 'racks'}, ${vessels} vessels.`;
-  const waiting = rows.filter(({ readyAt }) => readyAt === null || readyAt > now);
-  const longest = waiting.reduce<CalendarRow | null>(
-    (latest, row) => ((row.readyAt ?? Infinity) > (latest?.readyAt ?? -Infinity) ? row : latest),
-    null,
-  );
-  if (longest === null) return { lead, rest: '' };
-  const formats = formatsOf(longest.studioId);
-  const date =
-    longest.readyAt === null || !formats ? 'no date yet' : formats.daySeenFrom(longest.readyAt, now);
-  return {
-    lead,
-    rest: `The longest wait is ${longest.name} in ${longest.place.split(', ').at(-1)}: ${date}, because of ${longest.lastCode}.`,
-  };
+/** Whether everything on a rack passes the gate by an instant, epoch ms. */
+export function isReadyBy(row: CalendarRow, by: number): boolean {
+  return row.curedAt !== null && row.curedAt <= by && !row.untested;
 }
