@@ -14,6 +14,7 @@ export default defineConfig({
   expect: { timeout: 15_000 },
   reporter: [['list'], ['json', { outputFile: `${root}.cache/test/e2e.json` }]],
   use: {
+    actionTimeout: 15_000,
     baseURL: process.env['E2E_URL'],
     screenshot: 'only-on-failure',
     trace: 'retain-on-failure',
