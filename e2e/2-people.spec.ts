@@ -59,7 +59,7 @@ test('an invitation goes out by mail and is accepted', async ({ page, browser, d
   await invited.getByLabel('Password', { exact: true }).fill('a long enough sentence');
   await invited.getByRole('button', { name: 'Accept' }).click();
   await expect(invited.getByRole('heading', { level: 1, name: 'Rooms' })).toBeVisible();
-  await expect(invited.getByText('High Barn')).toBeVisible();
+  await expect(invited.getByRole('heading', { name: /^High Barn/ })).toBeVisible();
   await expect(invited.getByText('Quay Street')).toHaveCount(0);
   await context.close();
 });
