@@ -129,7 +129,8 @@ function figures(facts: AlertFacts, write: (value: number) => string): string {
   return parts.length === 0 ? '' : `${parts.join(', ')}.`;
 }
 
-function valueInWords(facts: AlertFacts, value: number, formats: RoomFormats): string {
+/** A value of an alert with its unit, e.g. a worst or a step. */
+export function valueInWords(facts: AlertFacts, value: number, formats: RoomFormats): string {
   switch (facts.kind) {
     case 'too-cold':
       return days(value);

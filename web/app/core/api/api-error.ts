@@ -1,4 +1,4 @@
-import type { FormGroup } from '@angular/forms';
+import type { AbstractControl } from '@angular/forms';
 import type { Problem, ProblemCode } from '#shared/contract/problem';
 
 /** A request that did not succeed; `message` is a sentence a person can act on. */
@@ -30,7 +30,7 @@ export function sentenceOf(error: unknown): string {
  * Puts the problems named field by field beside their form controls (error key `server`).
  * @returns the sentence for the form as a whole: what is left, or null when every problem found its field
  */
-export function showFieldErrors(error: unknown, form: FormGroup): string | null {
+export function showFieldErrors(error: unknown, form: AbstractControl): string | null {
   const fields = error instanceof ApiError ? (error.problem?.fields ?? []) : [];
   if (fields.length === 0) return sentenceOf(error);
   const homeless: string[] = [];

@@ -54,18 +54,16 @@ describe('a line of the alerts list', () => {
       'Tomas has it',
     );
     const shelved = { by: 'Ines', until: '2026-05-04T17:00:00Z', reason: 'fitter' };
-    expect(whose(alert({ shelved }), formats, NOW)).toBe('shelved by Ines until 18:00');
+    expect(whose(alert({ shelved }), formats, NOW)).toBe('shelved by Ines until 18:00: fitter');
   });
 
-  it('puts what is critical first and what is over last', () => {
+  it('puts the worst first and what is over last', () => {
     const late = alert({ id: 'late', raisedAt: '2026-05-04T14:00:00Z' });
     const critical = alert({ id: 'critical' }, 'critical');
     const over = alert({ id: 'over', state: 'returned', clearedAt: '2026-05-04T14:20:00Z' });
-    expect([over, alert({ id: 'early' }), late, critical].sort(byUrgency).map(({ id }) => id)).toEqual([
-      'critical',
-      'late',
-      'early',
-      'over',
-    ]);
+    const notice = alert({ id: 'notice', raisedAt: '2026-05-04T14:30:00Z' }, 'notice');
+    expect(
+      [over, notice, alert({ id: 'early' }), late, critical].sort(byUrgency).map(({ id }) => id),
+    ).toEqual(['critical', 'late', 'early', 'notice', 'over']);
   });
 });

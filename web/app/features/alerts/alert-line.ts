@@ -38,7 +38,7 @@ export function alertLine(alert: Alert, formats: StudioFormats, now: number): Al
 /** "Ines has it", "nobody yet", "shelved by Ines until 18:00". */
 export function whose(alert: Alert, formats: StudioFormats, now: number): string {
   if (alert.shelved) {
-    return `shelved by ${alert.shelved.by} until ${formats.timeSeenFrom(alert.shelved.until, now)}`;
+    return `shelved by ${alert.shelved.by} until ${formats.timeSeenFrom(alert.shelved.until, now)}: ${alert.shelved.reason}`;
   }
   if (alert.state === 'returned') return 'over, nobody has looked at it';
   const holder = alert.holder?.name ?? alert.acknowledged?.by;
@@ -46,9 +46,10 @@ export function whose(alert: Alert, formats: StudioFormats, now: number): string
   return holder ? `${holder} has it` : 'nobody yet';
 }
 
-/** Critical first, then the newest. */
+const WEIGHT: Readonly<Record<Alert['facts']['severity'], number>> = { critical: 0, warning: 1, notice: 2 };
+
+/** The worst first, among them the newest; what is over comes last. */
 export function byUrgency(a: Alert, b: Alert): number {
-  const weight = (alert: Alert) =>
-    alert.clearedAt !== null ? 2 : alert.facts.severity === 'critical' ? 0 : 1;
+  const weight = (alert: Alert) => (alert.clearedAt !== null ? 3 : WEIGHT[alert.facts.severity]);
   return weight(a) - weight(b) || b.raisedAt.localeCompare(a.raisedAt);
 }

@@ -4,12 +4,15 @@ import {
   computed,
   effect,
   inject,
+  input,
   signal,
   untracked,
 } from '@angular/core';
 import { MatButton } from '@angular/material/button';
 import { MatButtonToggle, MatButtonToggleGroup } from '@angular/material/button-toggle';
-import { RouterLink } from '@angular/router';
+import { MatFormField, MatLabel } from '@angular/material/form-field';
+import { MatOption, MatSelect } from '@angular/material/select';
+import { Router, RouterLink } from '@angular/router';
 import type { Alert, alertRoutes } from '#shared/contract/alerts';
 import { Api } from '../../core/api/api';
 import { Loadable } from '../../core/api/loadable';
@@ -23,14 +26,23 @@ import { LoadingNote } from '../../ui/loading-note';
 import { PageHeader } from '../../ui/page-header';
 import { StatusMark } from '../../ui/status-mark';
 import { type AlertLine, alertLine, byUrgency } from './alert-line';
+import { type Past, PastAlerts } from './past-alerts';
 
 type View = 'open' | 'shelved' | 'past';
 
+const VIEWS: readonly { readonly view: View; readonly name: string }[] = [
+  { view: 'open', name: 'Open' },
+  { view: 'shelved', name: 'Shelved' },
+  { view: 'past', name: 'Past' },
+];
 const A_PAGE = 50;
 const EMPTY: Readonly<Record<View, { title: string; text: string }>> = {
   open: { title: 'Nothing is open.', text: 'Every room that is heard is within its limits.' },
-  shelved: { title: 'Nothing is shelved.', text: '' },
-  past: { title: 'No past alerts.', text: '' },
+  shelved: {
+    title: 'Nothing is shelved.',
+    text: 'A shelved alert comes back by itself when its time is up.',
+  },
+  past: { title: 'No past alerts.', text: 'What is over is kept here with its whole story.' },
 };
 
 /** Alerts of the own studios: open, shelved, past. */
@@ -43,6 +55,10 @@ const EMPTY: Readonly<Record<View, { title: string; text: string }>> = {
     MatButton,
     MatButtonToggle,
     MatButtonToggleGroup,
+    MatFormField,
+    MatLabel,
+    MatOption,
+    MatSelect,
     PageHeader,
     RouterLink,
     StatusMark,
@@ -52,25 +68,48 @@ const EMPTY: Readonly<Record<View, { title: string; text: string }>> = {
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class AlertsPage {
+  // From the address.
+  readonly view = input('open', {
+    transform: (text?: string): View => (text === 'shelved' || text === 'past' ? text : 'open'),
+  });
+  readonly studio = input('', { transform: (text?: string) => text ?? '' });
+
   private readonly api = inject(Api);
+  private readonly router = inject(Router);
   private readonly formatsOf = inject(Formats);
   private readonly clock = inject(StudioClock);
   private readonly session = inject(Session);
   protected readonly live = inject(LiveStore);
-  protected readonly view = signal<View>('open');
-  protected readonly past = new Loadable<Alert[]>();
-  protected readonly more = signal(false);
+  protected readonly past = new Loadable<Past>();
+  private readonly pages = signal<PastAlerts | null>(null);
   protected readonly empty = computed(() => EMPTY[this.view()]);
 
-  private readonly studios = computed(() =>
+  /** Studios whose alerts the person may see. */
+  protected readonly readable = computed(() =>
     this.live.studios().filter(({ id }) => this.session.may('alerts.read', id)),
   );
+  private readonly studios = computed(() =>
+    this.readable().filter(({ id }) => this.studio() === '' || id === this.studio()),
+  );
+  private readonly pastOf = computed(() =>
+    this.view() === 'past'
+      ? this.studios()
+          .map(({ id }) => id)
+          .join(' ')
+      : '',
+  );
   /** Open and shelved ones are live; past ones are loaded. */
+  private readonly current = computed(() => this.studios().flatMap((studio) => studio.alerts()));
   private readonly alerts = computed<readonly Alert[]>(() => {
-    const view = this.view();
-    if (view === 'past') return this.past.value() ?? [];
-    const all = this.studios().flatMap((studio) => studio.alerts());
-    return all.filter((alert) => (alert.shelved !== null) === (view === 'shelved')).sort(byUrgency);
+    if (this.view() === 'past') return this.past.value()?.alerts ?? [];
+    return this.current()
+      .filter((alert) => isShelved(alert) === (this.view() === 'shelved'))
+      .sort(byUrgency);
+  });
+  protected readonly views = computed(() => {
+    const shelved = this.current().filter(isShelved).length;
+    const counts: Partial<Record<View, number>> = { open: this.current().length - shelved, shelved };
+    return VIEWS.map(({ view, name }) => ({ view, name: counts[view] ? `${name} ${counts[view]}` : name }));
   });
   protected readonly lines = computed<readonly AlertLine[]>(() =>
     this.alerts().flatMap((alert) => {
@@ -81,29 +120,37 @@ export class AlertsPage {
 
   constructor() {
     effect(() => {
-      if (this.view() !== 'past' || this.studios().length === 0) return;
-      untracked(() => void this.loadPast());
+      const ids = this.pastOf();
+      if (ids !== '') untracked(() => this.startPast(ids.split(' ')));
     });
   }
 
-  protected loadPast(before?: string): Promise<void> {
-    const known = before === undefined ? [] : (this.past.value() ?? []);
-    return this.past.load(async () => {
-      const pages = await Promise.all(
-        this.studios().map(({ id }) =>
-          this.api.call<typeof alertRoutes.list>('GET', '/api/studios/:studioId/alerts', {
-            params: { studioId: id },
-            query: { view: 'past', limit: A_PAGE, ...(before === undefined ? {} : { before }) },
-          }),
-        ),
-      );
-      this.more.set(pages.some((page) => page.length === A_PAGE));
-      const found = pages.flat().sort((a, b) => b.raisedAt.localeCompare(a.raisedAt));
-      return [...known, ...found];
-    });
+  protected choose(change: { view?: View; studio?: string }): void {
+    const queryParams = Object.fromEntries(
+      Object.entries(change).map(([key, value]) => [key, value === '' || value === 'open' ? null : value]),
+    );
+    void this.router.navigate([], { queryParams, queryParamsHandling: 'merge', replaceUrl: true });
   }
 
-  protected older(): Promise<void> {
-    return this.loadPast(this.past.value()?.at(-1)?.raisedAt);
+  protected older(): void {
+    const pages = this.pages();
+    if (pages) void this.past.load(() => pages.further());
   }
+
+  private startPast(studioIds: readonly string[]): void {
+    this.past.clear();
+    this.pages.set(
+      new PastAlerts(studioIds, A_PAGE, (studioId, before) =>
+        this.api.call<typeof alertRoutes.list>('GET', '/api/studios/:studioId/alerts', {
+          params: { studioId },
+          query: { view: 'past', limit: A_PAGE, ...(before === undefined ? {} : { before }) },
+        }),
+      ),
+    );
+    this.older();
+  }
+}
+
+function isShelved(alert: Alert): boolean {
+  return alert.shelved !== null;
 }

@@ -1,4 +1,6 @@
 import type { AlertKind } from '#shared/contract/alerts';
+import type { RoomNow } from '#shared/contract/overview';
+import type { RoomLimits } from '#shared/contract/rooms';
 import type { StudioFormats } from '../../core/time/studio-formats';
 
 /** What a rule is called and what it holds against what. */
@@ -15,7 +17,7 @@ export const RULE_WORDS: Readonly<Record<AlertKind, { readonly name: string; rea
   'too-damp': { name: 'Too damp', about: 'Humidity above the room’s limit.' },
   condensation: {
     name: 'Close to condensation',
-    about: 'The coldest the room was in three hours lies within 1 K of the dew point.',
+    about: 'The coldest the room was in three hours lies close to the dew point.',
   },
   swinging: { name: 'Swinging', about: 'The range of 24 hours is larger than the room’s calm swing.' },
   silent: { name: 'Sensor silent', about: 'Nothing heard for three of its intervals, 15 minutes at least.' },
@@ -24,21 +26,52 @@ export const RULE_WORDS: Readonly<Record<AlertKind, { readonly name: string; rea
   'intake-silent': { name: 'All sensors silent', about: 'Nothing heard from any sensor of the studio.' },
 };
 
-/** How far back the value has to come before the alert can end: "0.5 °C inside the limit". */
-export function clearByInWords(kind: AlertKind, value: number, formats: StudioFormats): string {
+/** The limit a rule holds against in this room, as it is now; '' where it has none of its own. */
+export function limitInWords(
+  kind: AlertKind,
+  limits: RoomLimits,
+  now: Pick<RoomNow, 'heatLimit'>,
+  formats: StudioFormats,
+): string {
+  switch (kind) {
+    case 'too-warm':
+      return now.heatLimit === null
+        ? 'No limit now: nothing in the room frosts, and the room has no limit of its own.'
+        : `Limit now: ${formats.temperature(now.heatLimit)}.`;
+    case 'too-cold':
+      return `Band from ${formats.temperature(limits.bandLow)}; told when dates slip by more than ${days(limits.slipDays)}.`;
+    case 'too-damp':
+      return `Limit: ${formats.humidity(limits.humidityHigh)}.`;
+    case 'swinging':
+      return `Calm swing: ${formats.difference(limits.swingLimit)}.`;
+    case 'condensation':
+      return `Limit: ${formats.difference(1)} above the dew point.`;
+    case 'silent':
+    case 'stuck':
+    case 'battery':
+    case 'intake-silent':
+      return '';
+  }
+}
+
+/** In which unit a rule's way back is measured; null where there is none. */
+export function clearByUnit(kind: AlertKind): 'kelvin' | 'percent' | null {
   switch (kind) {
     case 'too-damp':
-      return `${value} % inside the limit`;
     case 'battery':
-      return `${value} % above the limit`;
+      return 'percent';
     case 'silent':
     case 'stuck':
     case 'intake-silent':
-      return '';
+      return null;
     case 'too-warm':
     case 'too-cold':
     case 'condensation':
     case 'swinging':
-      return `${formats.difference(value)} inside the limit`;
+      return 'kelvin';
   }
+}
+
+function days(count: number): string {
+  return `${count} ${count === 1 ? 'day' : 'days'}`;
 }

@@ -8,13 +8,13 @@ import {
   signal,
   untracked,
 } from '@angular/core';
-import { FormArray, FormControl, FormGroup, ReactiveFormsModule, Validators } from '@angular/forms';
+import { FormArray, FormGroup, ReactiveFormsModule } from '@angular/forms';
 import { MatButton } from '@angular/material/button';
 import { MatCheckbox } from '@angular/material/checkbox';
 import { MatFormField, MatLabel } from '@angular/material/form-field';
 import { MatOption, MatSelect } from '@angular/material/select';
 import { RouterLink } from '@angular/router';
-import type { alertRoutes, Rule, Severity } from '#shared/contract/alerts';
+import type { alertRoutes, Rule } from '#shared/contract/alerts';
 import { Announcer } from '../../core/announcer/announcer';
 import { Api } from '../../core/api/api';
 import { showFieldErrors } from '../../core/api/api-error';
@@ -27,23 +27,8 @@ import { ErrorNote } from '../../ui/error-note';
 import { FormField } from '../../ui/form-field';
 import { LoadingNote } from '../../ui/loading-note';
 import { PageHeader } from '../../ui/page-header';
-import { clearByInWords, RULE_WORDS } from './rule-words';
-
-const needed = (value: number, max: number) =>
-  new FormControl(value, {
-    nonNullable: true,
-    validators: [Validators.required, Validators.min(0), Validators.max(max)],
-  });
-
-const ruleForm = (rule: Rule) =>
-  new FormGroup({
-    kind: new FormControl(rule.kind, { nonNullable: true }),
-    enabled: new FormControl(rule.enabled, { nonNullable: true }),
-    severity: new FormControl<Severity>(rule.severity, { nonNullable: true }),
-    onDelayMinutes: needed(rule.onDelayMinutes, 720),
-    offDelayMinutes: needed(rule.offDelayMinutes, 720),
-    clearBy: needed(rule.clearBy, 20),
-  });
+import { type RuleForm, ruleForm, ruleOf } from './rule-form';
+import { clearByUnit, limitInWords, RULE_WORDS } from './rule-words';
 
 /** The alert rules of one room. */
 @Component({
@@ -77,48 +62,70 @@ export class RulesPage {
   private readonly formatsOf = inject(Formats);
   protected readonly live = inject(LiveStore);
   protected readonly rules = new Loadable<Rule[]>();
-  protected readonly form = new FormGroup({ rules: new FormArray<ReturnType<typeof ruleForm>>([]) });
+  protected readonly form = new FormGroup({ rules: new FormArray<RuleForm>([]) });
   protected readonly fault = signal<string | null>(null);
   protected readonly busy = signal(false);
+  protected readonly saved = signal(false);
   protected readonly place = computed(() => this.live.room(this.roomId()) ?? null);
+  private readonly studioId = computed(() => this.place()?.studio.id ?? null);
+  private readonly formats = computed(() => {
+    const place = this.place();
+    return place ? this.formatsOf.of(place.studio.studio()) : null;
+  });
+  private readonly unit = computed(() => this.formats()?.unit ?? 'C');
   protected readonly note = computed(() => {
     const place = this.place();
     return place ? `${place.studio.studio().name}, ${place.room.info().name}` : '';
   });
-  protected readonly mayWrite = computed(() =>
-    this.session.may('rules.write', this.place()?.studio.id ?? ''),
-  );
+  protected readonly mayWrite = computed(() => this.session.may('rules.write', this.studioId() ?? ''));
+  protected readonly mayLimits = computed(() => this.session.may('rooms.write', this.studioId() ?? ''));
+  /** Each rule with its name, its limit as it is now, and its way back. */
+  protected readonly lines = computed(() => {
+    const [place, formats] = [this.place(), this.formats()];
+    if (!place || !formats) return [];
+    return (this.rules.value() ?? []).map(({ kind }, index) => {
+      const unit = clearByUnit(kind);
+      return {
+        ...{ kind, index, ...RULE_WORDS[kind] },
+        limit: limitInWords(kind, place.room.info().limits, place.room.now(), formats),
+        backUnit: unit === null ? '' : unit === 'percent' ? '%' : formats.unitSign,
+      };
+    });
+  });
 
   constructor() {
     effect(() => {
-      if (this.place() !== null && untracked(() => this.rules.value()) === null)
-        untracked(() => void this.load());
+      if (this.studioId() !== null) untracked(() => void this.load());
+    });
+    effect(() => {
+      const [rules, unit, may] = [this.rules.value(), this.unit(), this.mayWrite()];
+      untracked(() => {
+        this.form.controls.rules.clear();
+        for (const rule of rules ?? []) this.form.controls.rules.push(ruleForm(rule, unit));
+        if (may) this.form.enable();
+        else this.form.disable();
+      });
     });
   }
 
-  protected words(rule: Rule['kind']) {
-    return RULE_WORDS[rule];
-  }
-
-  protected clearBy(kind: Rule['kind'], value: number): string {
-    const studio = this.place()?.studio.studio();
-    return studio ? clearByInWords(kind, value, this.formatsOf.of(studio)) : '';
-  }
-
-  protected async load(): Promise<void> {
-    const params = { studioId: this.place()?.studio.id ?? '', roomId: this.roomId() };
-    await this.rules.load(() =>
+  protected load(): Promise<void> {
+    const params = { studioId: this.studioId() ?? '', roomId: this.roomId() };
+    return this.rules.load(() =>
       this.api.call<typeof alertRoutes.rules>('GET', '/api/studios/:studioId/rooms/:roomId/rules', {
         params,
       }),
     );
-    this.show(this.rules.value() ?? []);
   }
 
   protected async save(): Promise<void> {
-    const studioId = this.place()?.studio.id;
+    const studioId = this.studioId();
     this.form.markAllAsTouched();
-    if (studioId === undefined || this.form.invalid || this.busy()) return;
+    this.saved.set(false);
+    if (studioId === null || this.busy()) return;
+    if (this.form.invalid) {
+      this.fault.set('Some numbers need attention; they are marked above.');
+      return;
+    }
     this.busy.set(true);
     this.fault.set(null);
     try {
@@ -128,21 +135,16 @@ export class RulesPage {
           '/api/studios/:studioId/rooms/:roomId/rules',
           {
             params: { studioId, roomId: this.roomId() },
-            body: this.form.controls.rules.getRawValue(),
+            body: this.form.controls.rules.controls.map((form) => ruleOf(form, this.unit())),
           },
         ),
       );
+      this.saved.set(true);
       this.announcer.say('The rules were saved.');
     } catch (error) {
-      this.fault.set(showFieldErrors(error, this.form));
+      this.fault.set(showFieldErrors(error, this.form.controls.rules));
     } finally {
       this.busy.set(false);
     }
-  }
-
-  private show(rules: readonly Rule[]): void {
-    this.form.controls.rules.clear();
-    for (const rule of rules) this.form.controls.rules.push(ruleForm(rule));
-    if (!this.mayWrite()) this.form.disable();
   }
 }

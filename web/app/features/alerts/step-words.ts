@@ -1,7 +1,8 @@
-import type { AlertStep } from '#shared/contract/alerts';
+import type { AlertFacts, AlertStep } from '#shared/contract/alerts';
+import { valueInWords } from '#shared/words/alert-words';
+import type { StudioFormats } from '../../core/time/studio-formats';
 
-/** The steps of an alert's life in words. */
-export const STEP_WORDS: Readonly<Record<AlertStep['what'], string>> = {
+const STEP_WORDS: Readonly<Record<AlertStep['what'], string>> = {
   raised: 'Raised',
   worse: 'Got worse',
   acknowledged: 'Acknowledged',
@@ -15,3 +16,25 @@ export const STEP_WORDS: Readonly<Record<AlertStep['what'], string>> = {
   returned: 'Over',
   cleared: 'Over',
 };
+
+/** Kinds whose steps carry a figure that says something. */
+const MEASURED: ReadonlySet<AlertFacts['kind']> = new Set([
+  'too-warm',
+  'too-cold',
+  'too-damp',
+  'condensation',
+  'swinging',
+  'battery',
+]);
+
+/** A step of an alert's life: "Got worse: 26.4 °C", "Acknowledged". */
+export function stepWords(
+  step: Pick<AlertStep, 'what' | 'value'>,
+  facts: AlertFacts,
+  formats: StudioFormats,
+): string {
+  const what = STEP_WORDS[step.what];
+  return step.value === null || !MEASURED.has(facts.kind)
+    ? what
+    : `${what}: ${valueInWords(facts, step.value, formats)}`;
+}
