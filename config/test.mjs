@@ -133,7 +133,7 @@ async function endToEnd() {
 /** One check without tests of its own counts as one. */
 async function check(title, args) {
   try {
-    await step(title, () => run('node', args, { cwd: root }));
+    await step(title, async () => void (await run('node', args, { cwd: root })));
     total.passed++;
   } catch (error) {
     printFault(error);

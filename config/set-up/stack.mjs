@@ -76,7 +76,10 @@ export class Stack {
         .map(([variable, { what }]) => ({ variable, what, port: Number(this.env[variable]) })),
     );
     await this.#startDatabase();
-    await step('bringing the tables up to date', () => this.#runServer('gateway/migrate.js'));
+    await step(
+      'bringing the tables up to date',
+      async () => void (await this.#runServer('gateway/migrate.js')),
+    );
     if (this.demo && !existsSync(this.#seededMark)) {
       await step('loading the demo: three studios, ninety days of readings', () => this.#loadDemo());
     }

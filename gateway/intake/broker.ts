@@ -2,7 +2,7 @@ import { readFileSync } from 'node:fs';
 import { createServer, type Server, type Socket } from 'node:net';
 import { Duplex } from 'node:stream';
 import { createServer as createTlsServer } from 'node:tls';
-import { Aedes, type AuthenticateError, type Client, type PublishPacket } from 'aedes';
+import { Aedes, type Client, type PublishPacket } from 'aedes';
 import type { Logger } from 'pino';
 import { demoClock, type DemoClock, demoClockTopic, parseReadingTopic } from '#shared/contract/telemetry';
 import type { Settings } from '../settings.js';
@@ -80,7 +80,7 @@ export class Broker {
       const refusal = Object.assign(new Error('unknown device or wrong secret'), {
         returnCode: BAD_CREDENTIALS,
       });
-      setTimeout(() => done(refusal as AuthenticateError, false), REFUSAL_DELAY_MS);
+      setTimeout(() => done(refusal, false), REFUSAL_DELAY_MS);
     };
     broker.authorizeSubscribe = (_client, _subscription, done) => done(null, null);
     broker.authorizePublish = (client, packet, done) => this.#publish(client, packet, done);

@@ -15,18 +15,18 @@ const { saturation, points } = reference;
 
 describe('saturation vapour pressure', () => {
   it.each(saturation.rows)('at %d °C agrees with the tables', (celsius, magnus, ashrae, iapws, steam) => {
-    expect(Math.abs(magnusSaturationPressure(celsius!) - magnus!)).toBeLessThanOrEqual(
+    expect(Math.abs(magnusSaturationPressure(celsius) - magnus)).toBeLessThanOrEqual(
       saturation.tolerance.magnusToPrinted,
     );
-    expect(Math.abs(saturationPressure(celsius!) - ashrae!)).toBeLessThanOrEqual(
+    expect(Math.abs(saturationPressure(celsius) - ashrae)).toBeLessThanOrEqual(
       saturation.tolerance.ashraeToPsychrolib,
     );
-    expect(Math.abs(saturationPressure(celsius!) / iapws! - 1)).toBeLessThanOrEqual(
+    expect(Math.abs(saturationPressure(celsius) / iapws - 1)).toBeLessThanOrEqual(
       saturation.tolerance.ashraeToIapwsRelative,
     );
     // The steam table's first row is at 0.01 °C.
-    const inSteamTable = celsius === 0 ? 0.01 : celsius!;
-    expect(Math.abs(magnusSaturationPressure(inSteamTable) / steam! - 1)).toBeLessThanOrEqual(
+    const inSteamTable = celsius === 0 ? 0.01 : celsius;
+    expect(Math.abs(magnusSaturationPressure(inSteamTable) / steam - 1)).toBeLessThanOrEqual(
       saturation.tolerance.magnusToSteamTableRelative,
     );
   });
@@ -34,14 +34,14 @@ describe('saturation vapour pressure', () => {
 
 describe('dew point, humidity ratio, absolute humidity', () => {
   it.each(points.rows)('at %d °C and %d %%', (celsius, humidity, magnus, ashrae, ratio, absolute) => {
-    expect(Math.abs(magnusDewPoint(celsius!, humidity!) - magnus!)).toBeLessThanOrEqual(
+    expect(Math.abs(magnusDewPoint(celsius, humidity) - magnus)).toBeLessThanOrEqual(
       points.tolerance.dewPoint,
     );
-    expect(Math.abs(dewPoint(celsius!, humidity!) - ashrae!)).toBeLessThanOrEqual(points.tolerance.dewPoint);
-    expect(Math.abs(humidityRatio(celsius!, humidity!) - ratio!)).toBeLessThanOrEqual(
+    expect(Math.abs(dewPoint(celsius, humidity) - ashrae)).toBeLessThanOrEqual(points.tolerance.dewPoint);
+    expect(Math.abs(humidityRatio(celsius, humidity) - ratio)).toBeLessThanOrEqual(
       points.tolerance.humidityRatio,
     );
-    expect(Math.abs(absoluteHumidity(celsius!, humidity!) - absolute!)).toBeLessThanOrEqual(
+    expect(Math.abs(absoluteHumidity(celsius, humidity) - absolute)).toBeLessThanOrEqual(
       points.tolerance.absoluteHumidity,
     );
   });

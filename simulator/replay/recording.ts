@@ -126,12 +126,12 @@ function fieldsOf(text: string, { delimiter }: RecordingFormat): Row[] {
 function splitLine(line: string, delimiter: string): string[] {
   if (delimiter === ' ') return line.trim().split(/\s+/);
   try {
-    const [fields] = parse(line, {
+    const [fields] = parse<string[]>(line, {
       delimiter,
       relax_column_count: true,
       trim: true,
       relax_quotes: true,
-    }) as string[][];
+    });
     return (fields ?? []).map((field) => field.trim());
   } catch {
     return line.split(delimiter).map((field) => field.trim());

@@ -160,7 +160,7 @@ export class AlertsRepository {
           id: write.alert.id,
           ...toColumns(write.alert),
           version: 1,
-        } as AlertEntity);
+        });
         return;
       case 'change':
         await manager

@@ -34,7 +34,10 @@ export interface RuleState {
   readonly lastAt: number;
 }
 
-export type RuleEvent = { readonly what: 'raised' | 'worse' | 'cleared'; readonly at: number };
+export interface RuleEvent {
+  readonly what: 'raised' | 'worse' | 'cleared';
+  readonly at: number;
+}
 
 export const NORMAL: RuleState = {
   phase: 'normal',

@@ -1,9 +1,10 @@
-import { Component } from '@angular/core';
+import { ChangeDetectionStrategy, Component } from '@angular/core';
 import { TestBed } from '@angular/core/testing';
 import { FormControl, Validators } from '@angular/forms';
 import { FormField } from './form-field';
 
 @Component({
+  changeDetection: ChangeDetectionStrategy.OnPush,
   imports: [FormField],
   template: `<sr-form-field label="Vessels" type="number" step="1" [control]="vessels" />
     <sr-form-field label="Notes" [control]="notes" />`,
