@@ -126,13 +126,13 @@ function fieldsOf(text: string, { delimiter }: RecordingFormat): Row[] {
 function splitLine(line: string, delimiter: string): string[] {
   if (delimiter === ' ') return line.trim().split(/\s+/);
   try {
-    const [fields] = parse<string[]>(line, {
+    const rows: string[][] = parse(line, {
       delimiter,
       relax_column_count: true,
       trim: true,
       relax_quotes: true,
     });
-    return (fields ?? []).map((field) => field.trim());
+    return (rows[0] ?? []).map((field) => field.trim());
   } catch {
     return line.split(delimiter).map((field) => field.trim());
   }
