@@ -8,7 +8,7 @@ import type { Design, Fragrance, materialRoutes, Wax } from '#shared/contract/ma
 import { loadOfMix } from '#shared/cure/load';
 import { Announcer } from '../../core/announcer/announcer';
 import { Api } from '../../core/api/api';
-import { showFieldErrors } from '../../core/api/api-error';
+import { Saving } from '../../core/api/saving';
 import { figure } from '../../core/units/measure-words';
 import { DataTable } from '../../ui/data-table';
 import { EmptyNote } from '../../ui/empty-note';
@@ -48,8 +48,7 @@ export class Designs {
   private readonly api = inject(Api);
   private readonly announcer = inject(Announcer);
   protected readonly adding = signal(false);
-  protected readonly fault = signal<string | null>(null);
-  protected readonly busy = signal(false);
+  protected readonly saving = new Saving();
   protected readonly form = new FormGroup({
     name: words(),
     waxId: new FormControl('', { nonNullable: true, validators: [Validators.required] }),
@@ -100,11 +99,7 @@ export class Designs {
   }
 
   protected async add(): Promise<void> {
-    this.form.markAllAsTouched();
-    if (this.form.invalid || this.busy()) return;
-    this.busy.set(true);
-    this.fault.set(null);
-    try {
+    await this.saving.form(this.form, async () => {
       const { name } = await this.api.call<typeof materialRoutes.createDesign>('POST', '/api/designs', {
         body: this.form.getRawValue(),
       });
@@ -112,10 +107,6 @@ export class Designs {
       this.adding.set(false);
       this.announcer.say(`${name} was added.`);
       this.changed.emit();
-    } catch (error) {
-      this.fault.set(showFieldErrors(error, this.form));
-    } finally {
-      this.busy.set(false);
-    }
+    });
   }
 }

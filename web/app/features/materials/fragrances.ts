@@ -4,7 +4,7 @@ import { MatButton } from '@angular/material/button';
 import type { Fragrance, materialRoutes } from '#shared/contract/materials';
 import { Announcer } from '../../core/announcer/announcer';
 import { Api } from '../../core/api/api';
-import { showFieldErrors } from '../../core/api/api-error';
+import { Saving } from '../../core/api/saving';
 import { DataTable } from '../../ui/data-table';
 import { EmptyNote } from '../../ui/empty-note';
 import { FormField } from '../../ui/form-field';
@@ -67,11 +67,11 @@ import { FormField } from '../../ui/form-field';
             [control]="form.controls.certificateMaxLoad"
           />
         </div>
-        @if (fault()) {
-          <p role="alert" class="fault">{{ fault() }}</p>
+        @if (saving.fault()) {
+          <p role="alert" class="fault">{{ saving.fault() }}</p>
         }
         <div class="sr-actions">
-          <button mat-flat-button type="submit" [disabled]="busy()">Add</button>
+          <button mat-flat-button type="submit" [disabled]="saving.busy()">Add</button>
           <button mat-button type="button" (click)="adding.set(false)">Leave it</button>
         </div>
       </form>
@@ -88,8 +88,7 @@ export class Fragrances {
   private readonly api = inject(Api);
   private readonly announcer = inject(Announcer);
   protected readonly adding = signal(false);
-  protected readonly fault = signal<string | null>(null);
-  protected readonly busy = signal(false);
+  protected readonly saving = new Saving();
   protected readonly form = new FormGroup({
     name: new FormControl('', {
       nonNullable: true,
@@ -100,11 +99,7 @@ export class Fragrances {
   });
 
   protected async add(): Promise<void> {
-    this.form.markAllAsTouched();
-    if (this.form.invalid || this.busy()) return;
-    this.busy.set(true);
-    this.fault.set(null);
-    try {
+    await this.saving.form(this.form, async () => {
       const { name } = await this.api.call<typeof materialRoutes.createFragrance>('POST', '/api/fragrances', {
         body: this.form.getRawValue(),
       });
@@ -112,10 +107,6 @@ export class Fragrances {
       this.adding.set(false);
       this.announcer.say(`${name} was added.`);
       this.changed.emit();
-    } catch (error) {
-      this.fault.set(showFieldErrors(error, this.form));
-    } finally {
-      this.busy.set(false);
-    }
+    });
   }
 }

@@ -6,7 +6,7 @@ import { MatOption, MatSelect } from '@angular/material/select';
 import type { materialRoutes, Wax } from '#shared/contract/materials';
 import { Announcer } from '../../core/announcer/announcer';
 import { Api } from '../../core/api/api';
-import { showFieldErrors } from '../../core/api/api-error';
+import { Saving } from '../../core/api/saving';
 import { DataTable } from '../../ui/data-table';
 import { FormField } from '../../ui/form-field';
 import { FAMILY_WORDS } from '../../ui/family-words';
@@ -46,8 +46,7 @@ export class Waxes {
   private readonly announcer = inject(Announcer);
   protected readonly families = Object.entries(FAMILY_WORDS);
   protected readonly editing = signal<Wax | 'new' | null>(null);
-  protected readonly fault = signal<string | null>(null);
-  protected readonly busy = signal(false);
+  protected readonly saving = new Saving();
   protected readonly fresh = new FormGroup({
     name: new FormControl('', {
       nonNullable: true,
@@ -93,15 +92,13 @@ export class Waxes {
   }
 
   protected edit(wax: Wax | 'new'): void {
-    this.fault.set(null);
+    this.saving.clear();
     this.editing.set(wax);
     if (wax === 'new') this.fresh.reset();
     else this.form.reset({ name: wax.name, provenance: wax.provenance, kinetics: wax.kinetics });
   }
 
   protected async add(): Promise<void> {
-    this.fresh.markAllAsTouched();
-    if (this.fresh.invalid) return;
     await this.#save(this.fresh, () =>
       this.api.call<typeof materialRoutes.createWax>('POST', '/api/waxes', {
         body: this.fresh.getRawValue(),
@@ -110,8 +107,6 @@ export class Waxes {
   }
 
   protected async save(wax: Wax): Promise<void> {
-    this.form.markAllAsTouched();
-    if (this.form.invalid) return;
     const { kinetics, ...rest } = this.form.getRawValue();
     await this.#save(this.form, () =>
       this.api.call<typeof materialRoutes.changeWax>('PUT', '/api/waxes/:waxId', {
@@ -126,18 +121,11 @@ export class Waxes {
   }
 
   async #save(form: FormGroup, send: () => Promise<Wax>): Promise<void> {
-    if (this.busy()) return;
-    this.busy.set(true);
-    this.fault.set(null);
-    try {
+    await this.saving.form(form, async () => {
       const { name } = await send();
       this.editing.set(null);
       this.announcer.say(`${name} was saved. Every estimate on it is made anew.`);
       this.changed.emit();
-    } catch (error) {
-      this.fault.set(showFieldErrors(error, form));
-    } finally {
-      this.busy.set(false);
-    }
+    });
   }
 }

@@ -1,11 +1,11 @@
-import { ChangeDetectionStrategy, Component, inject, signal } from '@angular/core';
+import { ChangeDetectionStrategy, Component, inject } from '@angular/core';
 import { NonNullableFormBuilder, ReactiveFormsModule, Validators } from '@angular/forms';
 import { MatButton } from '@angular/material/button';
 import type { Session as OwnSession, sessionRoutes } from '#shared/contract/session';
 import { Announcer } from '../../core/announcer/announcer';
 import { Api } from '../../core/api/api';
-import { sentenceOf, showFieldErrors } from '../../core/api/api-error';
 import { Loadable } from '../../core/api/loadable';
+import { Saving } from '../../core/api/saving';
 import { Session } from '../../core/session/session';
 import { DataTable } from '../../ui/data-table';
 import { ErrorNote } from '../../ui/error-note';
@@ -37,11 +37,11 @@ import { plainTime } from './plain-time';
           hint="At least 8 characters; 15 or more are advised. Every other session ends."
           [control]="form.controls.next"
         />
-        @if (fault()) {
-          <p role="alert" class="fault">{{ fault() }}</p>
+        @if (saving.fault()) {
+          <p role="alert" class="fault">{{ saving.fault() }}</p>
         }
         <div class="sr-actions">
-          <button mat-flat-button type="submit" [disabled]="busy()">Change password</button>
+          <button mat-flat-button type="submit" [disabled]="saving.busy()">Change password</button>
         </div>
       </form>
     </section>
@@ -94,8 +94,7 @@ export class AccountPage {
     current: ['', Validators.required],
     next: ['', [Validators.required, Validators.minLength(8)]],
   });
-  protected readonly busy = signal(false);
-  protected readonly fault = signal<string | null>(null);
+  protected readonly saving = new Saving();
   protected readonly time = plainTime;
 
   constructor() {
@@ -107,32 +106,22 @@ export class AccountPage {
   }
 
   protected async change(): Promise<void> {
-    this.form.markAllAsTouched();
-    if (this.form.invalid || this.busy()) return;
-    this.busy.set(true);
-    this.fault.set(null);
-    try {
+    await this.saving.form(this.form, async () => {
       await this.api.call<typeof sessionRoutes.changePassword>('POST', '/api/me/password', {
         body: this.form.getRawValue(),
       });
       this.form.reset();
       this.announcer.say('The password was changed. Every other session has ended.');
       await this.load();
-    } catch (error) {
-      this.fault.set(showFieldErrors(error, this.form));
-    } finally {
-      this.busy.set(false);
-    }
+    });
   }
 
   protected async end({ id }: OwnSession): Promise<void> {
-    try {
+    await this.saving.act(async () => {
       await this.api.call<typeof sessionRoutes.endSession>('DELETE', '/api/me/sessions/:sessionId', {
         params: { sessionId: id },
       });
       await this.load();
-    } catch (error) {
-      this.fault.set(sentenceOf(error));
-    }
+    });
   }
 }

@@ -8,8 +8,8 @@ import type { Person, peopleRoutes } from '#shared/contract/people';
 import type { StudioRole } from '#shared/contract/roles';
 import { Announcer } from '../../core/announcer/announcer';
 import { Api } from '../../core/api/api';
-import { sentenceOf, showFieldErrors } from '../../core/api/api-error';
 import { Loadable } from '../../core/api/loadable';
+import { Saving } from '../../core/api/saving';
 import { Session } from '../../core/session/session';
 import { Confirm } from '../../ui/confirm-dialog';
 import { DataTable } from '../../ui/data-table';
@@ -62,8 +62,7 @@ export class PeoplePage {
   protected readonly people = new Loadable<Person[]>();
   protected readonly editing = signal<Person | 'new' | null>(null);
   protected readonly roles = signal<ReadonlyMap<string, Held>>(new Map());
-  protected readonly fault = signal<string | null>(null);
-  protected readonly busy = signal(false);
+  protected readonly saving = new Saving();
   protected readonly time = plainTime;
   protected readonly studios = computed(() => this.choice.studiosWith('people.invite'));
   protected readonly isOwner = computed(() => this.session.me()?.owner === true);
@@ -103,7 +102,7 @@ export class PeoplePage {
   }
 
   protected edit(person: Person | 'new'): void {
-    this.fault.set(null);
+    this.saving.clear();
     this.editing.set(person);
     this.form.reset(person === 'new' ? {} : { email: person.email, owner: person.owner });
     const held = person === 'new' ? [] : person.memberships;
@@ -116,15 +115,12 @@ export class PeoplePage {
 
   protected async save(): Promise<void> {
     const editing = this.editing();
-    this.form.markAllAsTouched();
-    if (editing === null || this.form.invalid || this.busy()) return;
-    this.busy.set(true);
-    this.fault.set(null);
+    if (editing === null) return;
     const { email, owner } = this.form.getRawValue();
     const memberships = [...this.roles()].flatMap(([studioId, role]) =>
       role === 'none' ? [] : [{ studioId, role }],
     );
-    try {
+    await this.saving.form(this.form, async () => {
       if (editing === 'new') {
         await this.api.call<typeof peopleRoutes.invite>('POST', '/api/people/invitations', {
           body: { email, owner, memberships },
@@ -136,11 +132,7 @@ export class PeoplePage {
       }
       this.editing.set(null);
       await this.load();
-    } catch (error) {
-      this.fault.set(showFieldErrors(error, this.form));
-    } finally {
-      this.busy.set(false);
-    }
+    });
   }
 
   protected async setDisabled(person: Person, disabled: boolean): Promise<void> {
@@ -154,13 +146,10 @@ export class PeoplePage {
       action: disabled ? 'Disable' : 'Enable',
     });
     if (answer === null) return;
-    this.fault.set(null);
-    try {
+    await this.saving.act(async () => {
       await this.#change(person, { disabled });
       await this.load();
-    } catch (error) {
-      this.fault.set(sentenceOf(error));
-    }
+    });
   }
 
   #change(

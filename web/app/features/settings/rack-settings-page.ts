@@ -7,8 +7,8 @@ import type { Rack, rackRoutes } from '#shared/contract/racks';
 import type { Room, roomRoutes } from '#shared/contract/rooms';
 import { Announcer } from '../../core/announcer/announcer';
 import { Api } from '../../core/api/api';
-import { sentenceOf, showFieldErrors } from '../../core/api/api-error';
 import { Loadable } from '../../core/api/loadable';
+import { Saving } from '../../core/api/saving';
 import { Confirm } from '../../ui/confirm-dialog';
 import { DataTable } from '../../ui/data-table';
 import { EmptyNote } from '../../ui/empty-note';
@@ -62,8 +62,7 @@ export class RackSettingsPage {
   protected readonly studio = inject(StudioChoice).with('racks.write');
   protected readonly all = new Loadable<RoomsAndRacks>();
   protected readonly editing = signal<Rack | 'new' | null>(null);
-  protected readonly fault = signal<string | null>(null);
-  protected readonly busy = signal(false);
+  protected readonly saving = new Saving();
   protected readonly form = new FormGroup({
     roomId: new FormControl('', { nonNullable: true, validators: [Validators.required] }),
     name: new FormControl('', {
@@ -106,7 +105,7 @@ export class RackSettingsPage {
   }
 
   protected edit(rack: Rack | 'new'): void {
-    this.fault.set(null);
+    this.saving.clear();
     this.editing.set(rack);
     this.form.controls.shelves.clear();
     if (rack === 'new') {
@@ -126,17 +125,14 @@ export class RackSettingsPage {
 
   protected async save(): Promise<void> {
     const [editing, studio] = [this.editing(), this.studio()];
-    this.form.markAllAsTouched();
-    if (editing === null || studio === null || this.form.invalid || this.busy()) return;
-    this.busy.set(true);
-    this.fault.set(null);
+    if (editing === null || studio === null) return;
     const { roomId, name, position, shelves } = this.form.getRawValue();
     const body = {
       name,
       position,
       shelves: shelves.map(({ id, capacity }) => (id === null ? { capacity } : { id, capacity })),
     };
-    try {
+    await this.saving.form(this.form, async () => {
       if (editing === 'new') {
         await this.api.call<typeof rackRoutes.create>('POST', '/api/studios/:studioId/rooms/:roomId/racks', {
           params: { studioId: studio.id, roomId },
@@ -151,11 +147,7 @@ export class RackSettingsPage {
       this.editing.set(null);
       this.announcer.say(`${name} was saved.`);
       await this.load(studio.id);
-    } catch (error) {
-      this.fault.set(showFieldErrors(error, this.form));
-    } finally {
-      this.busy.set(false);
-    }
+    });
   }
 
   protected async remove(rack: Rack): Promise<void> {
@@ -166,14 +158,12 @@ export class RackSettingsPage {
       action: 'Remove rack',
     });
     if (answer === null || studio === null) return;
-    try {
+    await this.saving.act(async () => {
       await this.api.call<typeof rackRoutes.remove>('DELETE', '/api/studios/:studioId/racks/:rackId', {
         params: { studioId: studio.id, rackId: rack.id },
       });
       this.announcer.say(`${rack.name} was removed.`);
       await this.load(studio.id);
-    } catch (error) {
-      this.fault.set(sentenceOf(error));
-    }
+    });
   }
 }

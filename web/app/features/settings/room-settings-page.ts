@@ -14,8 +14,8 @@ import type { Room, RoomLimits, roomRoutes } from '#shared/contract/rooms';
 import { fromFahrenheit, toFahrenheit } from '#shared/units/temperature';
 import { Announcer } from '../../core/announcer/announcer';
 import { Api } from '../../core/api/api';
-import { sentenceOf, showFieldErrors } from '../../core/api/api-error';
 import { Loadable } from '../../core/api/loadable';
+import { Saving } from '../../core/api/saving';
 import { Formats } from '../../core/time/studio-formats';
 import { Confirm } from '../../ui/confirm-dialog';
 import { DataTable } from '../../ui/data-table';
@@ -69,8 +69,7 @@ export class RoomSettingsPage {
   });
   protected readonly rooms = new Loadable<Room[]>();
   protected readonly editing = signal<Room | 'new' | null>(null);
-  protected readonly fault = signal<string | null>(null);
-  protected readonly busy = signal(false);
+  protected readonly saving = new Saving();
   protected readonly form = new FormGroup({
     name: new FormControl('', {
       nonNullable: true,
@@ -106,7 +105,7 @@ export class RoomSettingsPage {
   }
 
   protected edit(room: Room | 'new'): void {
-    this.fault.set(null);
+    this.saving.clear();
     this.editing.set(room);
     const limits = room === 'new' ? FRESH : room.limits;
     this.form.reset({
@@ -125,10 +124,7 @@ export class RoomSettingsPage {
 
   protected async save(): Promise<void> {
     const [editing, studio] = [this.editing(), this.studio()];
-    this.form.markAllAsTouched();
-    if (editing === null || studio === null || this.form.invalid || this.busy()) return;
-    this.busy.set(true);
-    this.fault.set(null);
+    if (editing === null || studio === null) return;
     const { limits, ...rest } = this.form.getRawValue();
     const body = {
       ...rest,
@@ -140,7 +136,7 @@ export class RoomSettingsPage {
         swingLimit: limits.swingLimit / (this.fahrenheit() ? 1.8 : 1),
       },
     };
-    try {
+    await this.saving.form(this.form, async () => {
       if (editing === 'new') {
         await this.api.call<typeof roomRoutes.create>('POST', '/api/studios/:studioId/rooms', {
           params: { studioId: studio.id },
@@ -155,11 +151,7 @@ export class RoomSettingsPage {
       this.editing.set(null);
       this.announcer.say(`${body.name} was saved.`);
       await this.load(studio.id);
-    } catch (error) {
-      this.fault.set(showFieldErrors(error, this.form));
-    } finally {
-      this.busy.set(false);
-    }
+    });
   }
 
   protected async remove(room: Room): Promise<void> {
@@ -170,15 +162,13 @@ export class RoomSettingsPage {
       action: 'Remove room',
     });
     if (answer === null || studio === null) return;
-    try {
+    await this.saving.act(async () => {
       await this.api.call<typeof roomRoutes.remove>('DELETE', '/api/studios/:studioId/rooms/:roomId', {
         params: { studioId: studio.id, roomId: room.id },
       });
       this.announcer.say(`${room.name} was removed.`);
       await this.load(studio.id);
-    } catch (error) {
-      this.fault.set(sentenceOf(error));
-    }
+    });
   }
 
   private fahrenheit(): boolean {

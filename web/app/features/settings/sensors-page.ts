@@ -17,8 +17,8 @@ import type { Room, roomRoutes } from '#shared/contract/rooms';
 import type { Sensor, sensorRoutes } from '#shared/contract/sensors';
 import { Announcer } from '../../core/announcer/announcer';
 import { Api } from '../../core/api/api';
-import { sentenceOf, showFieldErrors } from '../../core/api/api-error';
 import { Loadable } from '../../core/api/loadable';
+import { Saving } from '../../core/api/saving';
 import { Session } from '../../core/session/session';
 import { Formats } from '../../core/time/studio-formats';
 import { Confirm } from '../../ui/confirm-dialog';
@@ -95,8 +95,7 @@ export class SensorsPage {
   protected readonly editing = signal<Sensor | 'new' | null>(null);
   /** The secret of the sensor enrolled or renewed just now; shown until it is put away. */
   protected readonly fresh = signal<ReplyOf<typeof sensorRoutes.enrol> | null>(null);
-  protected readonly fault = signal<string | null>(null);
-  protected readonly busy = signal(false);
+  protected readonly saving = new Saving();
   protected readonly form = new FormGroup({
     roomId: new FormControl('', { nonNullable: true, validators: [Validators.required] }),
     name: new FormControl('', {
@@ -147,7 +146,7 @@ export class SensorsPage {
   }
 
   protected edit(sensor: Sensor | 'new'): void {
-    this.fault.set(null);
+    this.saving.clear();
     this.fresh.set(null);
     this.editing.set(sensor);
     if (sensor === 'new') {
@@ -160,13 +159,10 @@ export class SensorsPage {
 
   protected async save(): Promise<void> {
     const [editing, studio] = [this.editing(), this.studio()];
-    this.form.markAllAsTouched();
-    if (editing === null || studio === null || this.form.invalid || this.busy()) return;
-    this.busy.set(true);
-    this.fault.set(null);
+    if (editing === null || studio === null) return;
     const { roomId, offsetCelsius, ...rest } = this.form.getRawValue();
     const fields = { ...rest, offsetCelsius: offsetCelsius / (this.formats()?.unit === 'F' ? 1.8 : 1) };
-    try {
+    await this.saving.form(this.form, async () => {
       if (editing === 'new') {
         const enrolled = await this.api.call<typeof sensorRoutes.enrol>(
           'POST',
@@ -186,11 +182,7 @@ export class SensorsPage {
       this.editing.set(null);
       this.announcer.say(`${fields.name} was saved.`);
       await this.load(studio.id);
-    } catch (error) {
-      this.fault.set(showFieldErrors(error, this.form));
-    } finally {
-      this.busy.set(false);
-    }
+    });
   }
 
   protected async renew(sensor: Sensor): Promise<void> {
@@ -231,12 +223,9 @@ export class SensorsPage {
     sensor: Sensor,
     act: (params: { studioId: string; sensorId: string }) => Promise<void>,
   ): Promise<void> {
-    this.fault.set(null);
-    try {
+    await this.saving.act(async () => {
       await act({ studioId: sensor.studioId, sensorId: sensor.id });
       await this.load(sensor.studioId);
-    } catch (error) {
-      this.fault.set(sentenceOf(error));
-    }
+    });
   }
 }

@@ -8,8 +8,8 @@ import type { Person, peopleRoutes } from '#shared/contract/people';
 import type { Studio, studioRoutes } from '#shared/contract/studios';
 import { Announcer } from '../../core/announcer/announcer';
 import { Api } from '../../core/api/api';
-import { showFieldErrors } from '../../core/api/api-error';
 import { Loadable } from '../../core/api/loadable';
+import { Saving } from '../../core/api/saving';
 import { Session } from '../../core/session/session';
 import { DataTable } from '../../ui/data-table';
 import { ErrorNote } from '../../ui/error-note';
@@ -50,8 +50,7 @@ export class StudiosPage {
   /** The studio being changed; 'new' for one to be created. */
   protected readonly editing = signal<Studio | 'new' | null>(null);
   protected readonly recipients = signal<readonly string[]>([]);
-  protected readonly fault = signal<string | null>(null);
-  protected readonly busy = signal(false);
+  protected readonly saving = new Saving();
   protected readonly mayCreate = computed(() => this.session.mayAnywhere('studios.create'));
   protected readonly zones = Intl.supportedValuesOf('timeZone');
   protected readonly clock = clockOfMinutes;
@@ -102,7 +101,7 @@ export class StudiosPage {
   }
 
   protected edit(studio: Studio | 'new'): void {
-    this.fault.set(null);
+    this.saving.clear();
     this.editing.set(studio);
     this.recipients.set(studio === 'new' ? [] : studio.recipients);
     if (studio === 'new') return this.form.reset();
@@ -120,10 +119,7 @@ export class StudiosPage {
 
   protected async save(): Promise<void> {
     const editing = this.editing();
-    this.form.markAllAsTouched();
-    if (editing === null || this.form.invalid || this.busy()) return;
-    this.busy.set(true);
-    this.fault.set(null);
+    if (editing === null) return;
     const { quietFrom, quietTo, ...rest } = this.form.getRawValue();
     const body = {
       ...rest,
@@ -131,7 +127,7 @@ export class StudiosPage {
       quietTo: minutesOfClock(quietTo),
       recipients: [...this.recipients()],
     };
-    try {
+    await this.saving.form(this.form, async () => {
       if (editing === 'new')
         await this.api.call<typeof studioRoutes.create>('POST', '/api/studios', { body });
       else {
@@ -143,10 +139,6 @@ export class StudiosPage {
       this.editing.set(null);
       this.announcer.say(`${body.name} was saved.`);
       await this.load();
-    } catch (error) {
-      this.fault.set(showFieldErrors(error, this.form));
-    } finally {
-      this.busy.set(false);
-    }
+    });
   }
 }
