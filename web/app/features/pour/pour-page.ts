@@ -9,7 +9,14 @@ import {
   untracked,
 } from '@angular/core';
 import { toSignal } from '@angular/core/rxjs-interop';
-import { FormControl, FormGroup, ReactiveFormsModule, Validators } from '@angular/forms';
+import {
+  type AbstractControl,
+  FormControl,
+  FormGroup,
+  ReactiveFormsModule,
+  type ValidationErrors,
+  Validators,
+} from '@angular/forms';
 import { MatButton } from '@angular/material/button';
 import { MatCheckbox } from '@angular/material/checkbox';
 import { MatError, MatFormField, MatLabel } from '@angular/material/form-field';
@@ -34,7 +41,11 @@ import { FormField } from '../../ui/form-field';
 import { LoadingNote } from '../../ui/loading-note';
 import { PageHeader } from '../../ui/page-header';
 import { ShelfChoice } from '../../ui/shelf-choice';
-import { pourAdvice } from './pour-advice';
+import { placesNeeded, pourAdvice } from './pour-advice';
+
+const COOLEST_POUR = 20;
+const HOTTEST_POUR = 140;
+const MOST_VESSELS = 100_000;
 
 interface Materials {
   readonly designs: readonly Design[];
@@ -80,15 +91,22 @@ export class PourPage {
   protected readonly materials = new Loadable<Materials>();
   protected readonly shelfId = signal('');
   protected readonly overfill = signal(false);
-  protected readonly shelfIsFull = signal(false);
+  /** What the form was filled from, or why it could not be. */
+  protected readonly repeats = signal('');
   protected readonly fault = signal<string | null>(null);
   protected readonly busy = signal(false);
   protected readonly form = new FormGroup({
     studioId: new FormControl('', { nonNullable: true, validators: [Validators.required] }),
     designId: new FormControl('', { nonNullable: true, validators: [Validators.required] }),
-    vessels: new FormControl(24, { nonNullable: true, validators: [Validators.required, Validators.min(1)] }),
+    code: new FormControl('', { nonNullable: true, validators: [Validators.maxLength(24)] }),
+    vessels: new FormControl(24, {
+      nonNullable: true,
+      validators: [Validators.required, Validators.min(1), Validators.max(MOST_VESSELS), whole],
+    }),
     pouredAt: new FormControl('', { nonNullable: true, validators: [Validators.required] }),
-    pourCelsius: new FormControl<number | null>(null),
+    pourCelsius: new FormControl<number | null>(null, (control: AbstractControl<number | null>) =>
+      this.pourable(control),
+    ),
     notes: new FormControl('', { nonNullable: true }),
   });
   private readonly values = toSignal(this.form.valueChanges);
@@ -114,11 +132,12 @@ export class PourPage {
   });
   protected readonly advice = computed(() => {
     this.values();
-    const [design, wax] = [this.design(), this.wax()];
+    const [design, wax, formats] = [this.design(), this.wax(), this.formats()];
     const { vessels, pourCelsius } = this.form.getRawValue();
-    if (!design || !wax || !(vessels >= 1)) return null;
+    if (!design || !wax || !formats || !(vessels >= 1)) return null;
     const oil = this.materials.value()?.fragrances.find(({ id }) => id === design.fragranceId) ?? null;
-    return pourAdvice(design, wax, oil, vessels, pourCelsius === null ? null : this.celsius(pourCelsius));
+    const celsius = pourCelsius === null ? null : this.celsius(pourCelsius);
+    return pourAdvice(design, wax, oil, vessels, celsius, formats);
   });
   protected readonly shelves = computed(() => {
     this.values();
@@ -126,7 +145,26 @@ export class PourPage {
     if (!studio || !formats) return { groups: [], suggestion: null };
     const kinetics = this.wax()?.kinetics;
     const limit = !kinetics || kinetics.frosting === 'no' ? null : kinetics.frostingFrom;
-    return shelfGroups(studio, this.form.getRawValue().vessels, limit, formats);
+    return shelfGroups(studio, this.placesNeeded(), limit, formats);
+  });
+  /** What speaks against the shelf chosen. */
+  protected readonly shelfDoubt = computed(() => {
+    this.values();
+    const group = this.shelves().groups.find(({ shelves }) =>
+      shelves.some(({ id }) => id === this.shelfId()),
+    );
+    const shelf = group?.shelves.find(({ id }) => id === this.shelfId());
+    if (!group || !shelf) return { tooWarm: '', full: '' };
+    const needed = this.placesNeeded();
+    return {
+      tooWarm: group.tooWarm
+        ? `${group.roomName} is above the frosting limit of this wax now: it may cure sooner and frost.`
+        : '',
+      full:
+        shelf.free < needed
+          ? `This shelf has room for ${Math.max(0, shelf.free)} more vessels of 75 mm; this batch takes ${needed}.`
+          : '',
+    };
   });
 
   constructor() {
@@ -134,13 +172,21 @@ export class PourPage {
     effect(() => {
       const first = this.studios()[0];
       if (first && untracked(() => this.form.getRawValue().studioId) === '') {
-        this.form.patchValue({ studioId: first.id, pouredAt: this.nowIn(first.studio().timeZone) });
+        this.takeStudio(first.id);
       }
     });
     effect(() => {
       const id = this.repeat();
       if (id && this.materials.value() && this.live.loaded()) untracked(() => void this.prefill(id));
     });
+  }
+
+  /** Changes the studio; a time nobody has touched stays now, by the clock there. */
+  protected takeStudio(studioId: string): void {
+    this.shelfId.set('');
+    this.form.patchValue({ studioId });
+    const { pouredAt } = this.form.controls;
+    if (pouredAt.pristine) pouredAt.setValue(this.nowIn(this.studio()?.studio().timeZone ?? 'UTC'));
   }
 
   protected load(): Promise<void> {
@@ -161,11 +207,13 @@ export class PourPage {
     this.busy.set(true);
     this.fault.set(null);
     const { designId, vessels, pouredAt, pourCelsius, notes } = this.form.getRawValue();
+    const code = this.form.getRawValue().code.trim();
     try {
       const page = await this.api.call<typeof batchRoutes.pour>('POST', '/api/studios/:studioId/batches', {
         params: { studioId: studio.id },
         body: {
           ...{ designId, vessels, notes },
+          ...(code === '' ? {} : { code }),
           pouredAt: new Date(instantOfLocal(pouredAt, studio.studio().timeZone)).toISOString(),
           pourCelsius: pourCelsius === null ? null : this.celsius(pourCelsius),
           shelfId: this.shelfId() === '' ? null : this.shelfId(),
@@ -176,14 +224,14 @@ export class PourPage {
       await this.router.navigate(['/batches', page.card.id], { queryParams: { studio: studio.id } });
     } catch (error) {
       this.fault.set(showFieldErrors(error, this.form));
-      this.shelfIsFull.set((error as { code?: string }).code === 'shelf-full');
     } finally {
       this.busy.set(false);
     }
   }
 
-  /** Takes design, vessels and temperature from an earlier batch. */
+  /** Takes design, vessels and temperature from an earlier batch; its notes were about that one. */
   private async prefill(batchId: string): Promise<void> {
+    this.repeats.set('');
     for (const { id: studioId } of this.studios()) {
       const page = await this.api
         .call<typeof batchRoutes.get>('GET', '/api/studios/:studioId/batches/:batchId', {
@@ -192,14 +240,31 @@ export class PourPage {
         })
         .catch(() => null);
       if (!page?.recipe) continue;
+      this.takeStudio(studioId);
       const pour = page.recipe.pourCelsius;
       this.form.patchValue({
-        ...{ studioId, designId: page.recipe.designId, vessels: page.card.vessels, notes: page.notes },
+        ...{ designId: page.recipe.designId, vessels: page.card.vessels },
         pourCelsius: pour === null ? null : this.shown(pour),
-        pouredAt: this.nowIn(this.studio()?.studio().timeZone ?? 'UTC'),
       });
+      this.repeats.set(`Filled in from ${page.card.code}. Choose a shelf and start.`);
       return;
     }
+    this.repeats.set('The earlier batch was not found; fill the form in by hand.');
+  }
+
+  /** Room the vessels take on a shelf. */
+  private placesNeeded(): number {
+    return placesNeeded(this.form.getRawValue().vessels, this.design()?.vesselDiameterMm ?? 75);
+  }
+
+  private pourable({ value }: AbstractControl<number | null>): ValidationErrors | null {
+    if (value === null) return null;
+    const celsius = this.celsius(value);
+    if (celsius >= COOLEST_POUR && celsius <= HOTTEST_POUR) return null;
+    const formats = this.formats();
+    return {
+      range: `Between ${formats?.temperature(COOLEST_POUR, 0) ?? ''} and ${formats?.temperature(HOTTEST_POUR, 0) ?? ''}.`,
+    };
   }
 
   private nowIn(timeZone: string): string {
@@ -213,4 +278,8 @@ export class PourPage {
   private shown(celsius: number): number {
     return Math.round(this.formats()?.unit === 'F' ? toFahrenheit(celsius) : celsius);
   }
+}
+
+function whole({ value }: AbstractControl<number>): ValidationErrors | null {
+  return Number.isInteger(value) ? null : { whole: 'Count whole vessels.' };
 }
