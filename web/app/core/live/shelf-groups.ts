@@ -52,3 +52,22 @@ export function shelfGroups(
     suggestion: suggestion ?? null,
   };
 }
+
+/** What speaks against a shelf, in words; none where it suits. @param places room needed, in vessels of 75 mm */
+export function shelfDoubts(
+  groups: ReturnType<typeof shelfGroups>['groups'],
+  shelfId: string,
+  places: number,
+): { readonly tooWarm: string; readonly full: string } {
+  const group = groups.find(({ shelves }) => shelves.some(({ id }) => id === shelfId));
+  const shelf = group?.shelves.find(({ id }) => id === shelfId);
+  return {
+    tooWarm: group?.tooWarm
+      ? `${group.roomName} is above the frosting limit of this wax now: it may cure sooner and frost.`
+      : '',
+    full:
+      shelf && shelf.free < places
+        ? `This shelf has room for ${Math.max(0, shelf.free)} more vessels of 75 mm; this batch takes ${places}.`
+        : '',
+  };
+}

@@ -24,7 +24,7 @@ import { LoadingNote } from '../../ui/loading-note';
 import { PageHeader } from '../../ui/page-header';
 import { BatchActions } from './batch-actions';
 import { BatchStore } from './batch-store';
-import { gapWords, gateWords, recheckWords, shiftWords } from './batch-words';
+import { gapWords, gateWords, hoursInWords, recheckWords, shiftWords } from './batch-words';
 import { CurveChart } from './curve-chart';
 
 const STATUS_WORDS = { curing: 'curing', dispatched: 'dispatched', scrapped: 'scrapped' } as const;
@@ -161,6 +161,12 @@ export class BatchPage {
   protected readonly shifts = computed(() => {
     const formats = this.formats();
     return formats ? (this.page()?.shifts ?? []).map((shift) => shiftWords(shift, formats)) : [];
+  });
+  /** What the entries add up to. */
+  protected readonly shiftSum = computed(() => {
+    const shifts = this.page()?.shifts ?? [];
+    const hours = shifts.reduce((sum, shift) => sum + shift.hours, 0);
+    return `Altogether ${hoursInWords(hours)}, against a steady ${this.formats()?.temperature(21, 0) ?? ''} since the pour.`;
   });
   protected readonly curveRows = computed(() => {
     const formats = this.formats();

@@ -49,7 +49,7 @@ export class BatchStore {
   }
 
   /** @throws ApiError */
-  async move(body: { version: number; shelfId: string; overfill: boolean }): Promise<void> {
+  async move(body: { version: number; shelfId: string; at?: string; overfill: boolean }): Promise<void> {
     this.page.set(
       await this.api.call<typeof batchRoutes.move>('POST', '/api/studios/:studioId/batches/:batchId/move', {
         params: this.params(),
@@ -59,7 +59,12 @@ export class BatchStore {
   }
 
   /** @throws ApiError */
-  async end(body: { version: number; as: 'dispatched' | 'scrapped'; reason?: string }): Promise<void> {
+  async end(body: {
+    version: number;
+    as: 'dispatched' | 'scrapped';
+    at?: string;
+    reason?: string;
+  }): Promise<void> {
     this.page.set(
       await this.api.call<typeof batchRoutes.end>('POST', '/api/studios/:studioId/batches/:batchId/end', {
         params: this.params(),

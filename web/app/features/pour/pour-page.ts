@@ -30,7 +30,7 @@ import { Api } from '../../core/api/api';
 import { showFieldErrors } from '../../core/api/api-error';
 import { Loadable } from '../../core/api/loadable';
 import { LiveStore } from '../../core/live/live-store';
-import { shelfGroups } from '../../core/live/shelf-groups';
+import { shelfDoubts, shelfGroups } from '../../core/live/shelf-groups';
 import { Session } from '../../core/session/session';
 import { StudioClock } from '../../core/time/studio-clock';
 import { Formats } from '../../core/time/studio-formats';
@@ -150,21 +150,7 @@ export class PourPage {
   /** What speaks against the shelf chosen. */
   protected readonly shelfDoubt = computed(() => {
     this.values();
-    const group = this.shelves().groups.find(({ shelves }) =>
-      shelves.some(({ id }) => id === this.shelfId()),
-    );
-    const shelf = group?.shelves.find(({ id }) => id === this.shelfId());
-    if (!group || !shelf) return { tooWarm: '', full: '' };
-    const needed = this.placesNeeded();
-    return {
-      tooWarm: group.tooWarm
-        ? `${group.roomName} is above the frosting limit of this wax now: it may cure sooner and frost.`
-        : '',
-      full:
-        shelf.free < needed
-          ? `This shelf has room for ${Math.max(0, shelf.free)} more vessels of 75 mm; this batch takes ${needed}.`
-          : '',
-    };
+    return shelfDoubts(this.shelves().groups, this.shelfId(), this.placesNeeded());
   });
 
   constructor() {
