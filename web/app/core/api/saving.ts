@@ -1,5 +1,5 @@
 import { signal } from '@angular/core';
-import type { FormGroup } from '@angular/forms';
+import type { AbstractControl } from '@angular/forms';
 import { sentenceOf, showFieldErrors } from './api-error';
 
 /** Sending what somebody filled in: one at a time, what is wrong shown beside its field or as a sentence. */
@@ -17,7 +17,7 @@ export class Saving {
   }
 
   /** Sends a form that is valid. @returns whether it was taken */
-  async form(form: FormGroup, send: () => Promise<unknown>): Promise<boolean> {
+  async form(form: AbstractControl, send: () => Promise<unknown>): Promise<boolean> {
     form.markAllAsTouched();
     if (form.invalid) return false;
     return this.run(send, (error) => showFieldErrors(error, form));

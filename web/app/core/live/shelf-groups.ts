@@ -2,6 +2,9 @@ import type { BatchCard } from '#shared/contract/batches';
 import type { StudioFormats } from '../time/studio-formats';
 import type { StudioLive } from './studio-live';
 
+/** A room this close below a frosting limit may be above it on the next warm day, K. */
+const CLOSE_KELVIN = 2;
+
 /** Free places of a shelf in vessels of 75 mm, as far as the curing batches tell. */
 function freeOn(shelfId: string, capacity: number, batches: readonly BatchCard[]): number {
   return (
@@ -38,15 +41,16 @@ export function shelfGroups(
         : tooWarm
           ? `${formats.temperature(celsius)} now, too warm for this wax`
           : `${stale ? 'last ' : ''}${formats.temperature(celsius)}${stale ? '' : ' now'}`;
-    return { roomName: room.info().name, fitness, tooWarm, stale, shelves };
+    const close = frostingFrom !== null && celsius !== null && celsius > frostingFrom - CLOSE_KELVIN;
+    return { roomName: room.info().name, fitness, tooWarm, close, stale, shelves };
   });
   const suggestion = groups
     .filter(({ tooWarm, stale }) => !tooWarm && !stale)
-    .flatMap(({ roomName, shelves }) =>
-      shelves.filter(({ free }) => free >= vessels).map((shelf) => ({ roomName, ...shelf })),
+    .flatMap(({ roomName, close, shelves }) =>
+      shelves.filter(({ free }) => free >= vessels).map((shelf) => ({ roomName, close, ...shelf })),
     )
-    // The tightest fit leaves the large gaps for large batches.
-    .sort((a, b) => a.free - b.free)[0];
+    // A room close to the limit comes last; the tightest fit leaves the large gaps for large batches.
+    .sort((a, b) => Number(a.close) - Number(b.close) || a.free - b.free)[0];
   return {
     groups: [...groups].sort((a, b) => Number(a.tooWarm) - Number(b.tooWarm)),
     suggestion: suggestion ?? null,

@@ -7,8 +7,8 @@ import type { Person, peopleRoutes } from '#shared/contract/people';
 import { may, roleIn } from '#shared/contract/roles';
 import { Announcer } from '../../core/announcer/announcer';
 import { Api } from '../../core/api/api';
-import { sentenceOf } from '../../core/api/api-error';
 import { Loadable } from '../../core/api/loadable';
+import { Saving } from '../../core/api/saving';
 import { Session } from '../../core/session/session';
 import { StudioClock } from '../../core/time/studio-clock';
 import { Formats } from '../../core/time/studio-formats';
@@ -49,8 +49,7 @@ export class AlertActions {
   protected readonly note = signal('');
   protected readonly hours = signal<number>(USUAL_HOURS);
   protected readonly personId = signal('');
-  protected readonly fault = signal<string | null>(null);
-  protected readonly busy = signal(false);
+  protected readonly saving = new Saving();
 
   private readonly alert = computed(() => this.store.story.value()?.alert ?? null);
   protected readonly can = computed(() => {
@@ -92,7 +91,7 @@ export class AlertActions {
   }
 
   protected ask(action: 'shelve' | 'hand-over' | null): void {
-    this.fault.set(null);
+    this.saving.clear();
     this.personId.set('');
     this.asking.set(action);
   }
@@ -120,18 +119,9 @@ export class AlertActions {
   }
 
   private async act(done: string, send: () => Promise<void>): Promise<void> {
-    if (this.busy()) return;
-    this.busy.set(true);
-    this.fault.set(null);
-    try {
-      await send();
-      this.asking.set(null);
-      this.note.set('');
-      this.announcer.say(done);
-    } catch (error) {
-      this.fault.set(sentenceOf(error));
-    } finally {
-      this.busy.set(false);
-    }
+    if (!(await this.saving.act(send))) return;
+    this.asking.set(null);
+    this.note.set('');
+    this.announcer.say(done);
   }
 }

@@ -17,8 +17,8 @@ import { RouterLink } from '@angular/router';
 import type { alertRoutes, Rule } from '#shared/contract/alerts';
 import { Announcer } from '../../core/announcer/announcer';
 import { Api } from '../../core/api/api';
-import { showFieldErrors } from '../../core/api/api-error';
 import { Loadable } from '../../core/api/loadable';
+import { Saving } from '../../core/api/saving';
 import { LiveStore } from '../../core/live/live-store';
 import { Session } from '../../core/session/session';
 import { Formats } from '../../core/time/studio-formats';
@@ -63,8 +63,9 @@ export class RulesPage {
   protected readonly live = inject(LiveStore);
   protected readonly rules = new Loadable<Rule[]>();
   protected readonly form = new FormGroup({ rules: new FormArray<RuleForm>([]) });
-  protected readonly fault = signal<string | null>(null);
-  protected readonly busy = signal(false);
+  protected readonly saving = new Saving();
+  /** Whether a number was refused before anything was sent. */
+  protected readonly refused = signal(false);
   protected readonly saved = signal(false);
   protected readonly place = computed(() => this.live.room(this.roomId()) ?? null);
   private readonly studioId = computed(() => this.place()?.studio.id ?? null);
@@ -119,32 +120,22 @@ export class RulesPage {
 
   protected async save(): Promise<void> {
     const studioId = this.studioId();
-    this.form.markAllAsTouched();
-    this.saved.set(false);
-    if (studioId === null || this.busy()) return;
-    if (this.form.invalid) {
-      this.fault.set('Some numbers need attention; they are marked above.');
-      return;
-    }
-    this.busy.set(true);
-    this.fault.set(null);
-    try {
+    if (studioId === null) return;
+    const { rules } = this.form.controls;
+    this.refused.set(rules.invalid);
+    const saved = await this.saving.form(rules, async () => {
       this.rules.set(
         await this.api.call<typeof alertRoutes.setRules>(
           'PUT',
           '/api/studios/:studioId/rooms/:roomId/rules',
           {
             params: { studioId, roomId: this.roomId() },
-            body: this.form.controls.rules.controls.map((form) => ruleOf(form, this.unit())),
+            body: rules.controls.map((form) => ruleOf(form, this.unit())),
           },
         ),
       );
-      this.saved.set(true);
-      this.announcer.say('The rules were saved.');
-    } catch (error) {
-      this.fault.set(showFieldErrors(error, this.form.controls.rules));
-    } finally {
-      this.busy.set(false);
-    }
+    });
+    this.saved.set(saved);
+    if (saved) this.announcer.say('The rules were saved.');
   }
 }

@@ -27,8 +27,8 @@ import type { Design, Fragrance, materialRoutes, Wax } from '#shared/contract/ma
 import { fromFahrenheit, toFahrenheit } from '#shared/units/temperature';
 import { Announcer } from '../../core/announcer/announcer';
 import { Api } from '../../core/api/api';
-import { showFieldErrors } from '../../core/api/api-error';
 import { Loadable } from '../../core/api/loadable';
+import { Saving } from '../../core/api/saving';
 import { LiveStore } from '../../core/live/live-store';
 import { shelfDoubts, shelfGroups } from '../../core/live/shelf-groups';
 import { Session } from '../../core/session/session';
@@ -93,8 +93,7 @@ export class PourPage {
   protected readonly overfill = signal(false);
   /** What the form was filled from, or why it could not be. */
   protected readonly repeats = signal('');
-  protected readonly fault = signal<string | null>(null);
-  protected readonly busy = signal(false);
+  protected readonly saving = new Saving();
   protected readonly form = new FormGroup({
     studioId: new FormControl('', { nonNullable: true, validators: [Validators.required] }),
     designId: new FormControl('', { nonNullable: true, validators: [Validators.required] }),
@@ -188,13 +187,10 @@ export class PourPage {
 
   protected async pour(): Promise<void> {
     const studio = this.studio();
-    this.form.markAllAsTouched();
-    if (studio === null || this.form.invalid || this.busy()) return;
-    this.busy.set(true);
-    this.fault.set(null);
+    if (studio === null) return;
     const { designId, vessels, pouredAt, pourCelsius, notes } = this.form.getRawValue();
     const code = this.form.getRawValue().code.trim();
-    try {
+    await this.saving.form(this.form, async () => {
       const page = await this.api.call<typeof batchRoutes.pour>('POST', '/api/studios/:studioId/batches', {
         params: { studioId: studio.id },
         body: {
@@ -208,11 +204,7 @@ export class PourPage {
       });
       this.announcer.say(`${page.card.code} was started.`);
       await this.router.navigate(['/batches', page.card.id], { queryParams: { studio: studio.id } });
-    } catch (error) {
-      this.fault.set(showFieldErrors(error, this.form));
-    } finally {
-      this.busy.set(false);
-    }
+    });
   }
 
   /** Takes design, vessels and temperature from an earlier batch; its notes were about that one. */
