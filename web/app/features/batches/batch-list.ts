@@ -7,13 +7,13 @@ import { figure } from '../../core/units/measure-words';
 export const COLUMNS = [
   'code',
   'design',
+  'next',
+  'place',
   'wax',
   'poured',
   'vessels',
-  'place',
   'hardening',
   'cureAge',
-  'next',
   'frosting',
 ] as const;
 export type Column = (typeof COLUMNS)[number];
@@ -35,6 +35,8 @@ export const RECIPE_COLUMNS: ReadonlySet<Column> = new Set(['design', 'wax', 'fr
 export const FIGURE_COLUMNS: ReadonlySet<Column> = new Set(['vessels', 'hardening', 'cureAge', 'frosting']);
 /** Shown until somebody chooses otherwise. */
 export const USUAL_COLUMNS: readonly Column[] = COLUMNS.filter((column) => column !== 'cureAge');
+/** The same on a phone: what fits beside each other. */
+export const NARROW_COLUMNS: readonly Column[] = ['code', 'design', 'next', 'place'];
 
 export interface ListSorting {
   readonly by: Column;

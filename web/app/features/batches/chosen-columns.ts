@@ -1,5 +1,5 @@
 import { Injectable, signal } from '@angular/core';
-import { type Column, COLUMNS, USUAL_COLUMNS } from './batch-list';
+import { type Column, COLUMNS, NARROW_COLUMNS, USUAL_COLUMNS } from './batch-list';
 
 const KEY = 'stillroom.batch-columns';
 
@@ -18,5 +18,6 @@ export class ChosenColumns {
 
 function remembered(): readonly Column[] {
   const kept = localStorage.getItem(KEY)?.split(' ');
-  return kept ? COLUMNS.filter((column) => kept.includes(column)) : USUAL_COLUMNS;
+  if (kept) return COLUMNS.filter((column) => kept.includes(column));
+  return matchMedia('(max-width: 720px)').matches ? NARROW_COLUMNS : USUAL_COLUMNS;
 }
