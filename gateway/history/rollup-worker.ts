@@ -25,7 +25,7 @@ interface Mark {
 }
 
 const MARKS_A_PASS = 3000;
-const REST_MS = 300;
+const REST_MS = 1000;
 const LOOK_EVERY_MS = 2000;
 
 /**
