@@ -127,20 +127,22 @@ export const estimate = z.object({
   ),
   resoftened: z.array(z.object({ from: f.instant, to: f.instant })),
   hoursOutsideTestedRange: z.number(),
-  /** The numbers behind the date. */
-  numbers: z.object({
-    testDays: z.number(),
-    scentDays: z.number(),
-    shipDays: z.number(),
-    cvD: z.number(),
-    sdEnergy: z.number(),
-    sdRoom: z.number(),
-    sdGapsDays: z.number(),
-    spread: z.number(),
-    meanCelsius: z.number().nullable(),
-    calibrated: z.boolean(),
-    provenance: z.string(),
-  }),
+  /** The numbers behind the date; null for a viewer, whom they would tell the wax. */
+  numbers: z
+    .object({
+      testDays: z.number(),
+      scentDays: z.number(),
+      shipDays: z.number(),
+      cvD: z.number(),
+      sdEnergy: z.number(),
+      sdRoom: z.number(),
+      sdGapsDays: z.number(),
+      spread: z.number(),
+      meanCelsius: z.number().nullable(),
+      calibrated: z.boolean(),
+      provenance: z.string(),
+    })
+    .nullable(),
 });
 export type EstimateView = z.infer<typeof estimate>;
 

@@ -244,6 +244,8 @@ describe('batches on a real database', () => {
     expect(seen.notes).toBe('');
     expect(seen.verdicts).toEqual([]);
     expect(seen.card).toMatchObject({ designName: null, waxFamily: null });
+    expect(page.estimate?.numbers).toHaveProperty('testDays');
+    expect(seen.estimate).toMatchObject({ asOf: page.estimate?.asOf, numbers: null });
     const foreign = await floor.addStudio('Other', 'America/Halifax');
     expect((await refusal(batches.get(foreign, page.card.id, undefined, 'owner'))).code).toBe('not-found');
     expect((await refusal(batches.curve(foreign, page.card.id))).code).toBe('not-found');

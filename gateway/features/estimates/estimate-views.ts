@@ -88,7 +88,7 @@ export function estimateForViewer(view: EstimateView): EstimateView {
   return {
     ...view,
     recheck: { due: false, at: null, because: 'none', hardenedSinceTest: null },
-    numbers: { ...view.numbers, provenance: '' },
+    numbers: null,
   };
 }
 

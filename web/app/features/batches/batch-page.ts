@@ -113,11 +113,10 @@ export class BatchPage {
       })),
     };
   });
-  /** The numbers behind the date. */
+  /** The numbers behind the date; a viewer gets none. */
   protected readonly numbers = computed(() => {
-    const [page, formats] = [this.page(), this.formats()];
-    const estimate = page?.estimate;
-    if (!estimate || !formats) return null;
+    const [estimate, formats] = [this.page()?.estimate, this.formats()];
+    if (!estimate?.numbers || !formats) return null;
     const { numbers } = estimate;
     const per = (share: number) => `${figure(share * 100, 1)} %`;
     return {
@@ -145,6 +144,13 @@ export class BatchPage {
       ],
       provenance: numbers.provenance,
       calibrated: numbers.calibrated,
+    };
+  });
+  /** What the rooms have done to it: also for those who see no numbers. */
+  protected readonly behind = computed(() => {
+    const [estimate, formats] = [this.page()?.estimate, this.formats()];
+    if (!estimate || !formats) return null;
+    return {
       outside: estimate.hoursOutsideTestedRange > 0 ? `${figure(estimate.hoursOutsideTestedRange, 1)} h` : '',
       resoftened: estimate.resoftened.map(
         ({ from, to }) => `${formats.dayAndTime(from)} to ${formats.dayAndTime(to)}`,
