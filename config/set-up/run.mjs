@@ -3,6 +3,7 @@ import { SetUpError } from './steps.mjs';
 
 /**
  * Runs a program to its end and returns what it wrote. With `show` its output goes to the terminal instead.
+ * The program does not outlive this process.
  * @throws SetUpError with the last lines of its output when it fails
  */
 export function run(command, args, { cwd, env, show = false, input } = {}) {
@@ -12,6 +13,9 @@ export function run(command, args, { cwd, env, show = false, input } = {}) {
       env: env ?? process.env,
       stdio: [input === undefined ? 'ignore' : 'pipe', show ? 'inherit' : 'pipe', show ? 'inherit' : 'pipe'],
     });
+    const end = () => child.kill();
+    process.once('exit', end);
+    child.once('close', () => process.off('exit', end));
     let output = '';
     const keep = (chunk) => (output = (output + chunk).slice(-200_000));
     child.stdout?.on('data', keep);
